@@ -1,0 +1,96 @@
+/** The certificate as FORMAT.md defines it, member by member in its order. */
+
+/** A JSON number up to 2^53 − 1 in size, a decimal string beyond. */
+export type FileInteger = number | string;
+
+/** Rows of strings, or sparse above 200 basis vectors. FORMAT.md, section 4. */
+export type StringMatrix =
+  | readonly (readonly string[])[]
+  | { readonly size: readonly [number, number]; readonly entries: readonly (readonly [number, number, string])[] };
+
+/** Rows of integers, or sparse above 200 basis vectors. FORMAT.md, section 6. */
+export type IntegerMatrix =
+  | readonly (readonly FileInteger[])[]
+  | { readonly size: readonly [number, number]; readonly entries: readonly (readonly [number, number, FileInteger])[] };
+
+export interface CertificateLattice {
+  readonly gram: StringMatrix;
+  readonly sign: 1 | -1;
+  readonly orientation?: 'entered' | 'reversed';
+  readonly rank: number;
+  readonly nullity: number;
+  readonly determinant: string;
+  readonly radical: readonly (readonly string[])[];
+}
+
+export type CertificateTarget =
+  | { readonly dimension: number }
+  | { readonly excess: number }
+  | { readonly least: { readonly upTo?: number | undefined } }
+  | { readonly any: true };
+
+export interface CertificateClaim {
+  readonly verdict: 'embeds' | 'excluded' | 'open';
+  readonly ground: 'embedding' | 'exhaustion' | 'dimension' | 'determinant' | 'hilbert' | null;
+  readonly target: CertificateTarget;
+  readonly scope: 'one' | 'all';
+  readonly dimension: number | null;
+  readonly complete: boolean;
+  readonly orbits?: string;
+  readonly total?: string;
+}
+
+export type TestResult = { readonly [key: string]: unknown } | string;
+
+export interface CertificateEmbedding {
+  readonly matrix: IntegerMatrix;
+  readonly zeroColumns?: number;
+  readonly orbitSize: string;
+  readonly tests: { readonly [name: string]: TestResult };
+}
+
+/** The tree of rows, revision 1. FORMAT.md, section 7. */
+export interface RowsTree {
+  readonly method: 'rows';
+  readonly revision: 1;
+  readonly dimension: number;
+  readonly basis: null | { readonly matrix: StringMatrix; readonly inverse: StringMatrix };
+  readonly order: readonly number[];
+  readonly nodes: string;
+  readonly orbits: string;
+}
+
+export type Exclusion =
+  | { readonly dimension: number; readonly ground: 'dimension' }
+  | { readonly dimension: number; readonly ground: 'determinant' }
+  | { readonly dimension: number; readonly ground: 'hilbert'; readonly primes: readonly string[] }
+  | { readonly dimension: number | null; readonly ground: 'exhaustion'; readonly tree: RowsTree };
+
+export interface CertificateEvidence {
+  readonly exclusions: readonly Exclusion[];
+  readonly list: RowsTree | null;
+}
+
+export interface ChunkEntry {
+  readonly sha256: string;
+  readonly records: number;
+  readonly bytes: number;
+}
+
+export interface CertificateHead {
+  readonly format: 'palmette.certificate/1';
+  /** The canonical question; its shape is given by contracts and re-read by the checker. */
+  readonly question: { readonly [key: string]: unknown };
+  readonly lattice: CertificateLattice;
+  readonly claim: CertificateClaim;
+  readonly embeddings: readonly CertificateEmbedding[] | { readonly chunks: readonly ChunkEntry[] };
+  readonly tests: { readonly [name: string]: TestResult };
+  readonly evidence: CertificateEvidence;
+}
+
+export interface Colophon {
+  readonly records: number;
+  readonly sha256: string;
+}
+
+export const CERTIFICATE_FORMAT = 'palmette.certificate/1';
