@@ -1,1 +1,10 @@
 export * from './types.ts';
+export {
+  CertificateWriter,
+  embeddingText,
+  fileInteger,
+  stringMatrix,
+  type CertificateParts,
+  type EmbeddingRecord,
+  type Sha256,
+} from './writer.ts';
