@@ -1,0 +1,67 @@
+/** `palmette answer`: one question, or one a line. */
+import { availableParallelism } from 'node:os';
+import { once } from 'node:events';
+import { answerOnAllCores, openThreads, type AnswerEnd, type Refused } from '@palmette/threads';
+import { fileArgument, readAll, readLines } from './read-input.ts';
+
+const EXIT = { settled: 0, open: 3, refused: 2 } as const;
+
+export async function answer(args: readonly string[]): Promise<number> {
+  const lines = args.includes('--lines');
+  const file = fileArgument(
+    args.filter((a) => a !== '--lines'),
+    'answer',
+  );
+  return lines ? answerLines(file) : answerOne(file);
+}
+
+async function answerOne(file: string): Promise<number> {
+  const document = (await readAll(file)).toString('utf8');
+  const end = await answerOnAllCores(document, { threads: availableParallelism() });
+  if (end.kind === 'refused') {
+    process.stderr.write(`${refusalLine(end)}\n`);
+    return EXIT.refused;
+  }
+  for (const bytes of end.certificate) await write(bytes);
+  if (end.reason !== undefined) process.stderr.write(`open: ${end.reason}; nothing can be concluded\n`);
+  return end.settled ? EXIT.settled : EXIT.open;
+}
+
+function refusalLine(refusal: Refused): string {
+  const place = refusal.path === undefined || refusal.path === '' ? '' : `${refusal.path}: `;
+  return `Refused: ${place}${refusal.message.replaceAll(/\s+/g, ' ')}`;
+}
+
+/** Questions in flight for each thread: enough that none waits for the order of output. */
+const IN_FLIGHT = 16;
+
+/** Answers come out in the order of the questions; a refused line gets an error and the rest goes on. */
+async function answerLines(file: string): Promise<number> {
+  const threads = openThreads({ threads: availableParallelism() });
+  const flying: Promise<AnswerEnd>[] = [];
+  let open = false;
+  const land = async () => {
+    const end = await flying.shift()!;
+    if (end.kind === 'refused') {
+      const { code, message, path } = end;
+      await write(`${JSON.stringify({ error: { code, message, ...(path === undefined ? {} : { path }) } })}\n`);
+      return;
+    }
+    open ||= !end.settled;
+    for (const bytes of end.certificate) await write(bytes);
+  };
+  try {
+    for await (const document of readLines(file)) {
+      flying.push(threads.run({ kind: 'answer', document }).end);
+      if (flying.length >= IN_FLIGHT * threads.size) await land();
+    }
+    while (flying.length > 0) await land();
+  } finally {
+    await threads.close();
+  }
+  return open ? EXIT.open : EXIT.settled;
+}
+
+async function write(bytes: Uint8Array | string): Promise<void> {
+  if (!process.stdout.write(bytes)) await once(process.stdout, 'drain');
+}

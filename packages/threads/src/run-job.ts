@@ -1,0 +1,119 @@
+/** What a thread does with each kind of job. */
+import {
+  CHECKER_REVISION,
+  concludeCheck,
+  openCheck,
+  openCheckRun,
+  splitCheck,
+  type CheckWork,
+} from '@palmette/checker';
+import { nextStep, openRun, type FoundOrbit, type Plan } from '@palmette/search';
+import { answerAlone } from './answer-alone.ts';
+import { checkAtOnce } from './check-whole.ts';
+import { certify } from './certify.ts';
+import { ahead, choose } from './choose.ts';
+import { CpuMeter } from './cpu-meter.ts';
+import type {
+  AssembleEnd,
+  AssembleJob,
+  CheckEnd,
+  CheckJob,
+  ConcludeEnd,
+  ConcludeJob,
+  Job,
+  JobEnd,
+  JobMessage,
+  ListEnd,
+  ListJob,
+} from './jobs.ts';
+import { packFound, unpackFound } from './found-chunks.ts';
+import { paceRun } from './paced-run.ts';
+import { understand } from './understand.ts';
+
+/** Parcels of a check. */
+const CHECK_PARCELS = 32;
+
+export interface ThreadTalk {
+  readonly words: Int32Array;
+  readonly say: (message: JobMessage) => void;
+}
+
+export function runJob<J extends Job>(job: J, talk: ThreadTalk): JobEnd<J> {
+  return run(job, talk) as JobEnd<J>;
+}
+
+function run(job: Job, talk: ThreadTalk): JobEnd<Job> {
+  switch (job.kind) {
+    case 'choose':
+      return choose(job.document, job.quickCpuMs);
+    case 'list':
+      return list(job, talk);
+    case 'assemble':
+      return assemble(job);
+    case 'check':
+      return checkParcel(job, talk);
+    case 'conclude':
+      return conclude(job);
+    case 'answer':
+      return answerAlone(job.document);
+  }
+}
+
+function list(job: ListJob, talk: ThreadTalk): ListEnd {
+  const run = openRun(
+    JSON.parse(job.plan) as Plan,
+    job.stage,
+    { from: job.from, to: job.to },
+    job.checkpoint ?? undefined,
+  );
+  return paceRun(run, { ...job, ...talk, takeChunks: () => packFound(run.takeFound()) });
+}
+
+function assemble(job: AssembleJob): AssembleEnd {
+  const meter = new CpuMeter();
+  const understood = understand(job.document);
+  const plan = JSON.parse(job.plan) as Plan;
+  const step = nextStep(plan, [...job.results], understood.arithmetic);
+  if ('stage' in step)
+    return { kind: 'stage', ahead: ahead(plan, step.stage, job.results, understood.seed), cpuMs: meter.ms };
+  const found: FoundOrbit[] = unpackFound(job.found);
+  const certified = certify(understood, plan, step.conclusion, job.results, found);
+  const nodes = job.results.reduce((sum, r) => sum + BigInt(r.nodes), 0n);
+  if (nodes <= BigInt(job.wholeCheckNodes)) {
+    return {
+      kind: 'settled',
+      ...certified,
+      checker: checkAtOnce(certified.certificate),
+      method: plan.why,
+      nodes,
+      cpuMs: meter.ms,
+    };
+  }
+  const work = workOf(certified.certificate);
+  return {
+    kind: 'to check',
+    ...certified,
+    parcels: work.trees.flatMap((tree, no) =>
+      splitCheck(tree, CHECK_PARCELS).map((piece, _, all) => ({ ...piece, share: 1 / all.length, tree: no })),
+    ),
+    cpuMs: meter.ms,
+  };
+}
+
+function workOf(certificate: readonly Uint8Array[]): CheckWork {
+  const opened = openCheck(Buffer.concat(certificate));
+  if ('outcome' in opened) throw new Error(`our own certificate was not accepted: ${opened.outcome.line}`);
+  return opened.work;
+}
+
+function checkParcel(job: CheckJob, talk: ThreadTalk): CheckEnd {
+  const tree = workOf(job.certificate).trees[job.tree]!;
+  const run = openCheckRun(tree, { from: job.from, to: job.to }, job.checkpoint ?? undefined);
+  return paceRun(run, { ...job, ...talk, memoryBytes: Number.POSITIVE_INFINITY, takeChunks: () => [] }) as CheckEnd;
+}
+
+function conclude(job: ConcludeJob): ConcludeEnd {
+  const meter = new CpuMeter();
+  const outcome = concludeCheck(workOf(job.certificate), job.counts);
+  return { checker: { verdict: outcome.verdict, line: outcome.line, revision: CHECKER_REVISION, cpuMs: meter.ms } };
+}

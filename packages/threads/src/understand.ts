@@ -1,0 +1,63 @@
+/** From the text of a question to its lattice, reduced basis and arithmetic. */
+import { createHash } from 'node:crypto';
+import { canonicalQuestion, readQuestion, Refusal, type CanonicalQuestion, type Question } from '@palmette/contracts';
+import {
+  arithmeticGround,
+  buildLattice,
+  reducedBasis,
+  SourceFault,
+  type ArithmeticGround,
+  type Lattice,
+} from '@palmette/lattice';
+
+export interface Understood {
+  readonly question: Question;
+  readonly canonical: CanonicalQuestion;
+  readonly lattice: Lattice;
+  readonly reduced: ReturnType<typeof reducedBasis>;
+  /** Why the lattice cannot embed in Z^n by arithmetic alone, or null. */
+  readonly arithmetic: (n: number) => ArithmeticGround | null;
+  /** 32 bits of the canonical question's hash: seeds every probe. */
+  readonly seed: number;
+}
+
+export const sha256 = (bytes: Uint8Array | string): string => createHash('sha256').update(bytes).digest('hex');
+
+/**
+ * Reads and builds.
+ * @throws Refusal with the path of the field, what was expected and what was found.
+ */
+export function understand(document: string): Understood {
+  const question = readQuestion(document);
+  const lattice = built(question);
+  const canonical = canonicalQuestion(question);
+  const known = new Map<number, ArithmeticGround | null>();
+  return {
+    question,
+    canonical,
+    lattice,
+    reduced: reducedBasis(lattice),
+    arithmetic: (n) => {
+      if (!known.has(n)) known.set(n, arithmeticGround(lattice, n));
+      return known.get(n)!;
+    },
+    seed: Number.parseInt(sha256(JSON.stringify(canonical)).slice(0, 8), 16),
+  };
+}
+
+function built(question: Question): Lattice {
+  try {
+    return buildLattice(question.source);
+  } catch (error) {
+    if (error instanceof SourceFault) throw new Refusal(error.code, error.message, `/source${error.path}`);
+    throw error;
+  }
+}
+
+/** The dimension that the target fixes by itself, or null for least and any. */
+export function fixedDimension(understood: Understood): number | null {
+  const { target } = understood.question;
+  if ('dimension' in target) return target.dimension;
+  if ('excess' in target) return understood.lattice.rank + target.excess;
+  return null;
+}
