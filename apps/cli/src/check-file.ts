@@ -2,8 +2,10 @@
 import { check } from '@palmette/checker';
 import { fileArgument, readAll } from './read-input.ts';
 
+const EXIT = { VERIFIED: 0, REJECTED: 1, 'NOT CHECKED': 2 } as const;
+
 export async function checkFile(args: readonly string[]): Promise<number> {
   const outcome = check(await readAll(fileArgument(args, 'check')));
   process.stdout.write(`${outcome.line}\n`);
-  return outcome.verdict === 'VERIFIED' ? 0 : 1;
+  return EXIT[outcome.verdict];
 }
