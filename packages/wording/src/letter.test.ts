@@ -1,0 +1,67 @@
+import { describe, expect, it } from 'vitest';
+import { endingLetter, type EndingFacts } from './letter.ts';
+import { cpuTimeInWords, momentInWords } from './letter-time.ts';
+
+const place = { publicUrl: 'https://palmette.example', timeZone: 'UTC' };
+const facts: EndingFacts = {
+  ending: 'settled',
+  person: { name: 'Mei' },
+  question: { id: 'q1', title: 'a pretzel', sourceLabel: 'P(3, 5, −7)', studyTitle: 'Pretzels' },
+  verdict: 'embeds',
+  ground: 'exhaustion',
+  dimension: 9,
+  orbits: '1',
+  complete: true,
+  reason: null,
+  cpuMs: (13 * 60 + 31) * 60_000,
+  startedAt: '2026-03-03T22:10:00Z',
+};
+
+describe('the letter about an ending', () => {
+  it('has the verdict as its subject and says ground, list, time and link (LOOK-DETAIL.md 6, number 15)', () => {
+    const letter = endingLetter(facts, place);
+    expect(letter.subject).toBe('Embeds in Z^9: P(3, 5, −7)');
+    expect(letter.body).toContain(
+      'The search that you started on 3 March at 22:10 (UTC) is settled. Embeds in Z^9, one orbit, list complete. Ground: exhaustion; checked. 13 h 31 min of CPU time.',
+    );
+    expect(letter.body).toContain('https://palmette.example/questions/q1');
+    expect(letter.body).toContain('letters are on for settled searches; change it on your account page');
+  });
+
+  it('never shows a spent budget as a no (number 16)', () => {
+    const letter = endingLetter({ ...facts, ending: 'spent', verdict: 'open', ground: null, dimension: null }, place);
+    expect(letter.subject).toBe('Open, budget used up: P(3, 5, −7)');
+    expect(letter.body.startsWith('This is not a no.')).toBe(true);
+    expect(letter.body).not.toContain('Excluded');
+  });
+
+  it('says when one embedding is all that was looked for, and when no Z^n is possible', () => {
+    const one = endingLetter({ ...facts, complete: false, orbits: null, dimension: 12, ground: 'embedding' }, place);
+    expect(one.body).toContain('Embeds in Z^12. One embedding was found; others were not looked for.');
+    const none = endingLetter({ ...facts, verdict: 'excluded', dimension: null, orbits: '0' }, place);
+    expect(none.subject).toBe('Excluded from every Z^n: P(3, 5, −7)');
+  });
+
+  it('gives a broken search its reason and no verdict', () => {
+    const letter = endingLetter(
+      { ...facts, ending: 'broken', verdict: 'open', ground: null, reason: 'the checker rejected the certificate' },
+      place,
+    );
+    expect(letter.subject).toBe('Broken: P(3, 5, −7)');
+    expect(letter.body).toContain('is broken: the checker rejected the certificate.');
+    expect(letter.body).not.toMatch(/embeds in|excluded from/i);
+  });
+});
+
+describe('times', () => {
+  it('are written in the zone that is named', () => {
+    expect(momentInWords('2026-12-31T23:30:00Z', 'Europe/Berlin')).toBe('on 1 January at 00:30 (Europe/Berlin)');
+  });
+
+  it.each([
+    [0, 'Under a second'],
+    [12_400, '12 s'],
+    [250_000, '4 min 10 s'],
+    [3_600_000, '1 h'],
+  ])('%d ms is %s', (ms, words) => expect(cpuTimeInWords(ms)).toBe(words));
+});
