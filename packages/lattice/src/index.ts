@@ -1,1 +1,10 @@
-export {};
+export * from './source.ts';
+export { buildLattice, reducedBasis, type Lattice, type ReducedBasis } from './build.ts';
+export { hirzebruchJung } from './hirzebruch-jung.ts';
+export { diagramRegions } from './source-diagram.ts';
+export { arithmeticGround, type ArithmeticGround } from './arithmetic-ground.ts';
+export { definiteness, discriminantGroup } from './invariants.ts';
+export { readPasted } from './read-pasted.ts';
+export { chainSource, readSourceText, rootLatticeSource } from './read-source-text.ts';
+export { sourceLabel } from './source-label.ts';
+export { testsOnList, type ListedEmbedding, type ListTests, type TestsOnListInput } from './tests-on-list.ts';
