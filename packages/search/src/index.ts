@@ -1,1 +1,17 @@
-export {};
+export { compareAddresses, type Address, type Interval } from './address.ts';
+export { choosePlan, type SearchQuestion } from './choose-plan.ts';
+export { cover, type CoverPiece } from './cover.ts';
+export { embeddingMatrix, orbitSize, treeBasis, type Basis, type Embedding } from './embedding.ts';
+export { estimate, type Estimate, type ProbeOptions } from './estimate.ts';
+export type { FoundOrbit } from './found.ts';
+export type { Plan, PlanTarget } from './plan.ts';
+export { openRun, Run, type Advance } from './run.ts';
+export {
+  nextStep,
+  type Arithmetic,
+  type ArithmeticGroundLike,
+  type Conclusion,
+  type Stage,
+  type StageResult,
+  type Step,
+} from './stages.ts';

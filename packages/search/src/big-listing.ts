@@ -1,0 +1,184 @@
+/**
+ * The children of one node when norms are too big for exact doubles: the same rule and the same order as `listing.ts`,
+ * in bigint, plainly. Slow and right: huge entries may take long, they must not be answered wrongly.
+ */
+import { integerSqrt } from '@palmette/exact';
+import type { FoundOrbit } from './found.ts';
+import { LISTED, type Listed } from './listing.ts';
+
+interface BigClass {
+  readonly mult: number;
+  /** Entries by depth, zeros left out. */
+  readonly entries: readonly (readonly [number, bigint])[];
+}
+
+/** One open slot: a column of a class, or a zero column, with the values still to be tried. */
+interface Slot {
+  /** Class number, or −1 for a zero column. */
+  readonly c: number;
+  value: bigint;
+  readonly low: bigint;
+}
+
+export class BigListing {
+  steps = 0;
+  private classes: BigClass[] = [];
+  private zeros = 0;
+  private depth = 0;
+  private rest = 0n;
+  private b: bigint[] = [];
+  private s: bigint[] = [];
+  /** Class of each slot in filling order. */
+  private slotClass: number[] = [];
+  private filled: Slot[] = [];
+  private state: 'fresh' | 'back' = 'fresh';
+
+  reset(zeros: number): void {
+    this.classes = [];
+    this.zeros = zeros;
+  }
+
+  begin(depth: number, norm: bigint, target: readonly bigint[], norms: readonly bigint[]): void {
+    this.depth = depth;
+    this.rest = norm;
+    this.b = target.slice(0, depth);
+    this.s = norms.slice(0, depth);
+    this.slotClass = this.classes.flatMap((c, i) => new Array<number>(c.mult).fill(i));
+    this.filled = [];
+    this.state = 'fresh';
+  }
+
+  next(limit: number): Listed {
+    const last = this.steps + limit;
+    for (;;) {
+      if (this.steps >= last) return LISTED.paused;
+      this.steps += 1;
+      if (this.state === 'fresh') {
+        if (this.rest === 0n) {
+          this.state = 'back';
+          if (this.canEndHere()) return LISTED.found;
+          continue;
+        }
+        if (!this.open()) this.state = 'back';
+      } else if (!this.stepBack()) return LISTED.done;
+      this.advanceTop();
+    }
+  }
+
+  private canEndHere(): boolean {
+    const top = this.filled.at(-1);
+    const next = this.slotClass[this.filled.length];
+    return this.b.every((x) => x === 0n) && !(top !== undefined && top.c >= 0 && next === top.c && top.value < 0n);
+  }
+
+  /** Opens the next slot with its value one above the first to try. False if there is none. */
+  private open(): boolean {
+    const at = this.filled.length;
+    const top = this.filled.at(-1);
+    let high = integerSqrt(this.rest);
+    if (at < this.slotClass.length) {
+      const c = this.slotClass[at]!;
+      const low = -high;
+      if (top !== undefined && top.c === c && top.value < high) high = top.value;
+      this.filled.push({ c, value: high + 1n, low });
+      return true;
+    }
+    const used = at - this.slotClass.length;
+    const left = BigInt(this.zeros - used);
+    if (left <= 0n || this.b.some((x) => x !== 0n)) return false;
+    if (top !== undefined && top.c < 0 && top.value < high) high = top.value;
+    if (high * high * left < this.rest) return false;
+    // the largest of at most `left` squares is at least rest / left
+    this.filled.push({ c: -1, value: high + 1n, low: ceilSqrt((this.rest + left - 1n) / left) });
+    return true;
+  }
+
+  private stepBack(): boolean {
+    const top = this.filled.at(-1);
+    if (top === undefined) return false;
+    this.apply(top, -1n);
+    return true;
+  }
+
+  /** Tries smaller values of the top slot until one may stand; drops the slot if none does. */
+  private advanceTop(): void {
+    if (this.state === 'back' && this.filled.length === 0) return;
+    const top = this.filled.at(-1);
+    if (top === undefined) return;
+    for (;;) {
+      top.value -= 1n;
+      if (top.value < top.low) {
+        this.filled.pop();
+        this.state = 'back';
+        return;
+      }
+      this.apply(top, 1n);
+      if (this.mayStand(top)) {
+        this.state = 'fresh';
+        return;
+      }
+      this.apply(top, -1n);
+    }
+  }
+
+  private apply(slot: Slot, sign: bigint): void {
+    this.rest -= sign * slot.value * slot.value;
+    if (slot.c < 0) return;
+    for (const [i, p] of this.classes[slot.c]!.entries) {
+      this.b[i]! -= sign * p * slot.value;
+      this.s[i]! -= sign * p * p;
+    }
+  }
+
+  private mayStand(slot: Slot): boolean {
+    if (this.rest < 0n) return false;
+    return (
+      slot.c < 0 || this.classes[slot.c]!.entries.every(([i]) => this.b[i]! * this.b[i]! <= this.rest * this.s[i]!)
+    );
+  }
+
+  writeChild(into: BigListing): void {
+    into.classes = this.childClasses();
+    into.zeros = this.zeros - this.filled.filter((s) => s.c < 0).length;
+  }
+
+  private childClasses(): BigClass[] {
+    const out: { mult: number; entries: (readonly [number, bigint])[] }[] = [];
+    let before: { c: number; value: bigint } | null = null;
+    const take = (c: number, value: bigint) => {
+      if (before !== null && before.c === c && before.value === value) {
+        out.at(-1)!.mult += 1;
+        return;
+      }
+      const entries = c < 0 ? [] : [...this.classes[c]!.entries];
+      if (value !== 0n) entries.push([this.depth, value]);
+      out.push({ mult: 1, entries });
+      before = { c, value };
+    };
+    this.slotClass.forEach((c, at) => take(c, this.filled[at]?.value ?? 0n));
+    this.filled.slice(this.slotClass.length).forEach((slot) => take(-1, slot.value));
+    return out;
+  }
+
+  /** The child as a finished embedding. */
+  orbit(order: readonly number[]): FoundOrbit {
+    const columns = this.childClasses().map(({ mult, entries }) => {
+      const column: (number | string)[] = new Array<number>(order.length).fill(0);
+      for (const [depth, value] of entries) {
+        const smallValue = Number(value);
+        column[order[depth]!] = Number.isSafeInteger(smallValue) ? smallValue : value.toString();
+      }
+      return { entries: column, count: mult };
+    });
+    return { columns, zeros: this.zeros - this.filled.filter((s) => s.c < 0).length };
+  }
+
+  get bytes(): number {
+    return 64 * (this.slotClass.length + this.classes.reduce((sum, c) => sum + c.entries.length, 0));
+  }
+}
+
+function ceilSqrt(a: bigint): bigint {
+  const s = integerSqrt(a);
+  return s * s === a ? s : s + 1n;
+}

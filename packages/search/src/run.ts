@@ -1,0 +1,243 @@
+/**
+ * One run over an interval of a tree: enters nodes in preorder, counts them, keeps what it finds. Can stop after any
+ * slice of work, tell where it stands, go on from there, and give the rest of its interval away.
+ */
+import { compareAddresses, type Address, type Interval } from './address.ts';
+import type { FoundOrbit } from './found.ts';
+import { openLadder, type Ladder } from './ladder.ts';
+import { LISTED } from './listing.ts';
+import type { Plan } from './plan.ts';
+import type { Stage } from './stages.ts';
+import { workingForm, type WorkingForm } from './working-form.ts';
+
+export type Advance = 'more' | 'done' | 'found';
+
+/** Steps of listing that stand for one node when work is measured. */
+const STEPS_PER_NODE = 16;
+/** Children that are counted to tell what share of a node is done; more count as this many. */
+const COUNTED_CHILDREN = 20_000;
+/** Depths that the share looks at: deeper ones weigh next to nothing. */
+const SHARE_DEPTH = 10;
+
+export class Run {
+  nodes = 0n;
+  orbits = 0n;
+  private readonly form: WorkingForm;
+  private readonly ladder: Ladder;
+  /** Child index at each depth; its length is the depth of the node where the run stands. */
+  private readonly path: number[] = [];
+  /** Next child index to be listed at each depth. */
+  private readonly index: number[] = [];
+  private to: Address | null;
+  private begun = false;
+  private finished = false;
+  private found: FoundOrbit[] = [];
+  private readonly childCounts = new Map<string, number>();
+
+  constructor(
+    plan: Plan,
+    private readonly stage: Stage,
+    private readonly interval: Interval,
+    checkpoint?: string,
+  ) {
+    this.form = workingForm(plan);
+    this.ladder = openLadder(this.form, stage.dimension);
+    this.to = interval.to;
+    if (checkpoint === undefined) return;
+    const { at, nodes, orbits } = JSON.parse(checkpoint) as { at: number[] | null; nodes: string; orbits: string };
+    this.nodes = BigInt(nodes);
+    this.orbits = BigInt(orbits);
+    if (at === null) return;
+    this.walkTo(at);
+    this.begun = true;
+  }
+
+  /** Works for about `nodes` nodes. `found` only where one embedding is wanted. */
+  advance(nodes: number): Advance {
+    if (this.finished) return 'done';
+    if (!this.begun) {
+      this.begun = true;
+      if (this.to !== null && compareAddresses(this.interval.from, this.to) >= 0) return this.end();
+      this.walkTo(this.interval.from);
+      this.enter();
+      if (this.foundOne()) return 'found';
+    }
+    for (let left = nodes * STEPS_PER_NODE; left > 0;) {
+      const depth = this.path.length;
+      if (depth === this.form.rank) {
+        if (!this.up()) return this.end();
+        continue;
+      }
+      const before = this.ladder.steps;
+      const listed = this.ladder.next(depth, left);
+      left -= this.ladder.steps - before + 1;
+      if (listed === LISTED.paused) return 'more';
+      if (listed === LISTED.done) {
+        if (!this.up()) return this.end();
+        continue;
+      }
+      this.path.push(this.index[depth]!);
+      this.index[depth]! += 1;
+      if (this.to !== null && compareAddresses(this.path, this.to) >= 0) {
+        this.path.pop();
+        return this.end();
+      }
+      this.enter();
+      if (this.foundOne()) return 'found';
+    }
+    return 'more';
+  }
+
+  private end(): Advance {
+    this.finished = true;
+    return 'done';
+  }
+
+  private foundOne(): boolean {
+    if (this.stage.purpose !== 'one' || this.orbits === 0n) return false;
+    this.finished = true;
+    return true;
+  }
+
+  /** Counts the node that the path leads to and opens the listing of its children. */
+  private enter(): void {
+    this.nodes += 1n;
+    const depth = this.path.length;
+    if (depth === this.form.rank) {
+      this.orbits += 1n;
+      this.found.push(depth === 0 ? { columns: [], zeros: this.stage.dimension } : this.ladder.orbit());
+      return;
+    }
+    if (depth > 0) this.ladder.descend(depth - 1);
+    this.openChildren(depth);
+  }
+
+  private openChildren(depth: number): void {
+    this.ladder.begin(depth);
+    this.index[depth] = 0;
+  }
+
+  private up(): boolean {
+    if (this.path.length === 0) return false;
+    this.path.pop();
+    return true;
+  }
+
+  /** Leads the ladder to a node that exists, without counting anything. */
+  private walkTo(address: Address): void {
+    this.openOrLeaf(0);
+    address.forEach((child, depth) => {
+      while (this.index[depth]! <= child) {
+        if (this.ladder.next(depth, Number.MAX_SAFE_INTEGER) !== LISTED.found)
+          throw new RangeError(`no node at address ${JSON.stringify(address)}`);
+        this.index[depth]! += 1;
+      }
+      this.path.push(child);
+      if (depth + 1 < this.form.rank) {
+        this.ladder.descend(depth);
+        this.openChildren(depth + 1);
+      }
+    });
+  }
+
+  private openOrLeaf(depth: number): void {
+    if (depth < this.form.rank) this.openChildren(depth);
+  }
+
+  /** What was found since the last call, in tree order. */
+  takeFound(): FoundOrbit[] {
+    const out = this.found;
+    this.found = [];
+    return out;
+  }
+
+  /** Where the run stands: the last node that was counted, and the counters. Found orbits must have been taken before. */
+  checkpoint(): string {
+    return JSON.stringify({
+      at: this.begun ? this.path : null,
+      nodes: this.nodes.toString(),
+      orbits: this.orbits.toString(),
+    });
+  }
+
+  /** Ends the interval earlier. The new end must lie after everything that was entered. */
+  shorten(to: Address): void {
+    this.to = to;
+  }
+
+  /** Half of the untouched siblings at the shallowest depth that has any, or null. */
+  giveAway(): { readonly mid: Address; readonly shareKept: number } | null {
+    if (!this.begun || this.finished) return null;
+    for (let depth = 0; depth < this.path.length; depth += 1) {
+      const end = this.endOfChildren(depth);
+      const untouched = end - this.path[depth]! - 1;
+      if (untouched < 1) continue;
+      const mid = [...this.path.slice(0, depth), this.path[depth]! + 1 + Math.floor(untouched / 2)];
+      const [from, cut, to] = [
+        this.position(this.interval.from),
+        this.position(mid),
+        this.to === null ? 1 : this.position(this.to),
+      ];
+      return { mid, shareKept: to > from ? Math.min(1, Math.max(0, (cut - from) / (to - from))) : 1 };
+    }
+    return null;
+  }
+
+  /** Number of children of the path's node at `depth` that belong to the interval. */
+  private endOfChildren(depth: number): number {
+    const count = this.countChildren(this.path.slice(0, depth));
+    const { to } = this;
+    if (to === null || to.length <= depth || to.slice(0, depth).some((x, i) => x !== this.path[i])) return count;
+    return Math.min(count, to.length > depth + 1 ? to[depth]! + 1 : to[depth]!);
+  }
+
+  /** Part of the interval that is done, 0 to 1, as if all children of a node weighed the same. */
+  get shareDone(): number {
+    if (this.finished) return 1;
+    if (!this.begun) return 0;
+    const [from, at, to] = [
+      this.position(this.interval.from),
+      this.position(this.path),
+      this.to === null ? 1 : this.position(this.to),
+    ];
+    return to > from ? Math.min(1, Math.max(0, (at - from) / (to - from))) : 0;
+  }
+
+  private position(address: Address): number {
+    let [position, width] = [0, 1];
+    for (let depth = 0; depth < Math.min(address.length, SHARE_DEPTH); depth += 1) {
+      width /= Math.max(1, this.countChildren(address.slice(0, depth)));
+      position += address[depth]! * width;
+    }
+    return Math.min(1, position);
+  }
+
+  private countChildren(node: Address): number {
+    const key = node.join(' ');
+    const known = this.childCounts.get(key);
+    if (known !== undefined) return known;
+    const ladder = openLadder(this.form, this.stage.dimension);
+    node.forEach((child, depth) => {
+      ladder.begin(depth);
+      for (let i = 0; i <= child; i += 1) ladder.next(depth, Number.MAX_SAFE_INTEGER);
+      ladder.descend(depth);
+    });
+    ladder.begin(node.length);
+    let count = 0;
+    while (count < COUNTED_CHILDREN && ladder.next(node.length, COUNTED_CHILDREN * STEPS_PER_NODE) === LISTED.found)
+      count += 1;
+    if (this.childCounts.size > 1_000) this.childCounts.clear();
+    this.childCounts.set(key, count);
+    return count;
+  }
+
+  /** Memory that the run counts for itself, in bytes. */
+  get bytes(): number {
+    return this.ladder.bytes + this.found.length * (64 + 24 * this.form.rank) + this.childCounts.size * 64;
+  }
+}
+
+/** @param checkpoint from `Run.checkpoint` of a run over the same interval (its end may have been shortened) */
+export function openRun(plan: Plan, stage: Stage, interval: Interval, checkpoint?: string): Run {
+  return new Run(plan, stage, interval, checkpoint);
+}

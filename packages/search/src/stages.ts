@@ -1,0 +1,161 @@
+/**
+ * The stages of a search: which tree comes next, given what the finished ones showed. Pure: the same results, the
+ * same next step.
+ *
+ * dimension, excess: one tree. any: one tree at n = trace of the working Gram, which holds every embedding (rule A of
+ * FORMAT.md). least: n = rank, rank + 1, … in turn, skipping what arithmetic excludes, until a tree shows an embedding;
+ * after rank + 3 an existence tree at the bound, so that a lattice that embeds nowhere comes to an end.
+ */
+import { planGram, type Plan } from './plan.ts';
+
+export interface Stage {
+  readonly no: number;
+  readonly dimension: number;
+  /** `one` stops at the first embedding. */
+  readonly purpose: 'one' | 'all';
+  /** An empty tree proves that no Z^n holds the lattice (n is at least the trace). */
+  readonly whole: boolean;
+}
+
+export interface StageResult extends Stage {
+  /** The whole tree was searched (false where `one` stopped at an embedding). */
+  readonly complete: boolean;
+  readonly nodes: string;
+  readonly orbits: string;
+}
+
+/** What arithmetic says against Z^n; the shape of lattice's ground, carried through untouched. */
+export type Arithmetic<G> = (n: number) => G | null;
+
+export interface Conclusion<G = ArithmeticGroundLike> {
+  readonly verdict: 'embeds' | 'excluded';
+  /** Null: target any, or excluded from every Z^n. */
+  readonly dimension: number | null;
+  readonly complete: boolean;
+  /** What excludes: the claim's dimension for `excluded`, n − 1 for a least n. Null where nothing has to be excluded. */
+  readonly exclusion: null | { readonly dimension: number | null; readonly arithmetic?: G; readonly stage?: number };
+  /** Stage whose orbits are the list or the witness. */
+  readonly listStage: number | null;
+  readonly listComplete: boolean;
+}
+
+export type ArithmeticGroundLike =
+  | { readonly ground: 'dimension' }
+  | { readonly ground: 'determinant' }
+  | { readonly ground: 'hilbert'; readonly primes: string[] };
+
+export type Step = { readonly stage: Stage } | { readonly conclusion: Conclusion };
+
+/** Dimensions above the rank that are tried before an existence tree at the bound is run (Mordell 1930, Ko 1937: rank ≤ 5 needs no more). */
+const TRIED_FIRST = 3;
+
+/** Largest n for which trees are built; the bound of the published interface. */
+const MAX_DIMENSION = 1_000_000;
+
+/** Trace of the working Gram: no embedding has more nonzero columns. */
+export function traceOf(plan: Plan): number {
+  const gram = planGram(plan);
+  const trace = gram.reduce((sum, row, i) => sum + row[i]!, 0n);
+  return Number(trace);
+}
+
+export function nextStep(
+  plan: Plan,
+  results: readonly StageResult[],
+  arithmetic: Arithmetic<ArithmeticGroundLike>,
+): Step {
+  const { target } = plan;
+  if ('dimension' in target) return fixed(plan, target.dimension, results, arithmetic);
+  if ('excess' in target) return fixed(plan, plan.order.length + target.excess, results, arithmetic);
+  if ('any' in target) return anyDimension(plan, results);
+  return least(plan, target.least.upTo, results, arithmetic);
+}
+
+function fixed(
+  plan: Plan,
+  n: number,
+  results: readonly StageResult[],
+  arithmetic: Arithmetic<ArithmeticGroundLike>,
+): Step {
+  const ground = arithmetic(n);
+  if (ground !== null) return excluded(n, { dimension: n, arithmetic: ground });
+  const [result] = results;
+  if (result === undefined) return { stage: { no: 0, dimension: n, purpose: plan.scope, whole: false } };
+  return result.orbits === '0' ? excluded(n, { dimension: n, stage: 0 }) : embeds(n, result, null);
+}
+
+function anyDimension(plan: Plan, results: readonly StageResult[]): Step {
+  const [result] = results;
+  if (result === undefined) return { stage: { no: 0, dimension: traceOf(plan), purpose: plan.scope, whole: true } };
+  return result.orbits === '0' ? excluded(null, { dimension: null, stage: 0 }) : embeds(null, result, null);
+}
+
+function least(
+  plan: Plan,
+  upTo: number | undefined,
+  results: readonly StageResult[],
+  arithmetic: Arithmetic<ArithmeticGroundLike>,
+): Step {
+  const rank = plan.order.length;
+  const trace = traceOf(plan);
+  const whole = upTo === undefined || upTo >= trace;
+  const bound = Math.min(upTo ?? trace, trace, MAX_DIMENSION);
+  const atBound = results.find((r) => r.dimension === bound);
+  const nowhere = (stage: number): Step =>
+    whole ? excluded(null, { dimension: null, stage }) : excluded(upTo!, { dimension: upTo!, stage });
+  if (atBound?.orbits === '0') return nowhere(atBound.no);
+  for (let n = rank; n <= bound; n += 1) {
+    const tried = results.find((r) => r.dimension === n && r.purpose === plan.scope);
+    if (tried !== undefined) {
+      if (tried.orbits !== '0') return embeds(n, tried, below(n, rank, results, arithmetic));
+      continue;
+    }
+    if (arithmetic(n) !== null) continue;
+    const existence = atBound === undefined && n > rank + TRIED_FIRST && n < bound;
+    return {
+      stage: {
+        no: results.length,
+        dimension: existence ? bound : n,
+        purpose: existence ? 'one' : plan.scope,
+        whole: (existence || n === bound) && whole,
+      },
+    };
+  }
+  const ground = arithmetic(bound);
+  if (ground === null) throw new Error(`the stages of a least search do not end: bound ${bound}`);
+  return excluded(whole ? null : upTo!, { dimension: whole ? null : upTo!, arithmetic: ground });
+}
+
+/** What excludes n − 1: its tree, or arithmetic. */
+function below(
+  n: number,
+  rank: number,
+  results: readonly StageResult[],
+  arithmetic: Arithmetic<ArithmeticGroundLike>,
+): Conclusion['exclusion'] {
+  if (n === 0) return null;
+  const tree = results.find((r) => r.dimension === n - 1 && r.orbits === '0');
+  if (tree !== undefined) return { dimension: n - 1, stage: tree.no };
+  const ground = n - 1 < rank ? ({ ground: 'dimension' } as const) : arithmetic(n - 1);
+  if (ground === null) throw new Error(`nothing excludes n = ${n - 1}`);
+  return { dimension: n - 1, arithmetic: ground };
+}
+
+function excluded(dimension: number | null, exclusion: NonNullable<Conclusion['exclusion']>): Step {
+  return {
+    conclusion: { verdict: 'excluded', dimension, complete: true, exclusion, listStage: null, listComplete: true },
+  };
+}
+
+function embeds(dimension: number | null, list: StageResult, exclusion: Conclusion['exclusion']): Step {
+  return {
+    conclusion: {
+      verdict: 'embeds',
+      dimension,
+      complete: list.complete,
+      exclusion,
+      listStage: list.no,
+      listComplete: list.complete && list.purpose === 'all',
+    },
+  };
+}
