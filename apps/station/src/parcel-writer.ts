@@ -84,8 +84,9 @@ export class ParcelWriter {
   }
 }
 
-function writeOf({ kind: _, ...write }: CheckpointMessage): CheckpointWrite {
-  return write;
+function writeOf(message: CheckpointMessage): CheckpointWrite {
+  const { checkpoint, nodes, orbits, cpuMs, shareDone, nodesPerSecond, chunks } = message;
+  return { checkpoint, nodes, orbits, cpuMs, shareDone, nodesPerSecond, chunks };
 }
 
 /** Several writes as one: the counts added, the newest place. */

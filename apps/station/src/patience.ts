@@ -32,7 +32,11 @@ export class Patience {
   private givenUp = false;
   private readonly waiting = new Set<() => void>();
 
-  constructor(private readonly log: Log) {}
+  /** @param firstWaitMs the first of the growing waits */
+  constructor(
+    private readonly log: Log,
+    private readonly firstWaitMs = FIRST_WAIT_MS,
+  ) {}
 
   /** No more waits: the process is about to end, and what is not written now stays in the spool. */
   giveUp(): void {
@@ -50,7 +54,7 @@ export class Patience {
    * @throws what the call throws when it is not an outage, or the outage itself after `giveUp`
    */
   async untilAnswered<T>(what: string, call: () => Promise<T>): Promise<T> {
-    for (let wait = FIRST_WAIT_MS; ; wait = Math.min(wait * 2, LONGEST_WAIT_MS)) {
+    for (let wait = this.firstWaitMs; ; wait = Math.min(wait * 2, LONGEST_WAIT_MS)) {
       try {
         return await call();
       } catch (error) {
