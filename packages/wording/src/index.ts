@@ -1,2 +1,11 @@
 export { endingLetter, type EndingFacts, type Letter, type LetterPlace } from './letter.ts';
 export { invitationLetter, passwordLetter } from './letter-account.ts';
+export * from './consequences.ts';
+export * from './durations.ts';
+export * from './grounds.ts';
+export * from './numbers.ts';
+export * from './places.ts';
+export * from './roles.ts';
+export * from './states.ts';
+export * from './test-results.ts';
+export * from './verdicts.ts';

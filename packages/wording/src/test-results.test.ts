@@ -1,0 +1,32 @@
+import { describe, expect, it } from 'vitest';
+import { testAnswerInWords, testInWords } from './test-results.ts';
+
+describe('answers of tests', () => {
+  it.each([
+    ['index', '3', '3'],
+    ['complement', { gram: [['41']] }, '<41>'],
+    [
+      'complement',
+      {
+        gram: [
+          ['2', '-1'],
+          ['-1', '2'],
+        ],
+      },
+      '[[2, −1], [−1, 2]]',
+    ],
+    ['complement', { gram: [] }, 'none: n is the rank'],
+    ['cubiquity', { applies: false, reason: 'n is not the rank' }, 'does not apply: n is not the rank'],
+    ['cubiquity', { cubiquitous: true, missed: null }, 'cubiquitous: every coset is hit'],
+    ['cubiquity', { cubiquitous: false, missed: [0, -1] }, 'not cubiquitous: a coset is missed, for instance (0, −1)'],
+    ['pair', { undecided: true, reason: 'the list is not complete' }, 'undecided: the list is not complete'],
+    ['pair', { passes: true, witness: [0, 1] }, 'passes with embeddings 1 and 2'],
+    ['pair', { passes: false }, 'fails'],
+    ['later', { value: 3 }, '{"value":3}'],
+  ])('%s %j is “%s”', (name, answer, words) => expect(testAnswerInWords(name, answer as never)).toBe(words));
+
+  it('have names, and an unknown one keeps its own', () => {
+    expect(testInWords('halfChangemaker')).toBe('half-integer changemaker');
+    expect(testInWords('later')).toBe('later');
+  });
+});

@@ -1,0 +1,54 @@
+/** What the tests on embeddings say, in words. The shapes are those of FORMAT.md, section 8. */
+import type { TestName } from '@palmette/contracts';
+import { countInWords, integerInWords, listInWords } from './numbers.ts';
+
+export type TestAnswer = string | { readonly [key: string]: unknown };
+
+const NAMES: Readonly<Record<TestName | 'index', string>> = {
+  complement: 'complement',
+  metaboliser: 'metaboliser',
+  pair: 'pair test',
+  cubiquity: 'cubiquity',
+  changemaker: 'changemaker',
+  halfChangemaker: 'half-integer changemaker',
+  dInvariants: 'd-invariants',
+  doubleOrbits: 'double orbits',
+  index: 'index in its span',
+};
+
+export function testInWords(name: string): string {
+  return (NAMES as Readonly<Record<string, string>>)[name] ?? name;
+}
+
+/** One answer in words. A shape that is not known is shown as it stands in the certificate, never dropped. */
+export function testAnswerInWords(name: string, answer: TestAnswer): string {
+  if (typeof answer === 'string') return countInWords(answer);
+  if (answer.applies === false) return `does not apply: ${String(answer.reason ?? 'no reason given')}`;
+  if (answer.undecided === true) return `undecided: ${String(answer.reason ?? 'no reason given')}`;
+  if (Array.isArray(answer.gram)) return gramInWords(answer.gram as readonly (readonly unknown[])[]);
+  if (name === 'cubiquity' && typeof answer.cubiquitous === 'boolean') {
+    if (answer.cubiquitous) return 'cubiquitous: every coset is hit';
+    const missed = Array.isArray(answer.missed)
+      ? `, for instance (${answer.missed
+          .map(String)
+          .map((x) => x.replace('-', '−'))
+          .join(', ')})`
+      : '';
+    return `not cubiquitous: a coset is missed${missed}`;
+  }
+  if (typeof answer.passes === 'boolean') {
+    const witness = Array.isArray(answer.witness)
+      ? ` with embeddings ${listInWords(answer.witness.map((i) => String(Number(i) + 1)))}`
+      : '';
+    return answer.passes ? `passes${witness}` : 'fails';
+  }
+  return JSON.stringify(answer);
+}
+
+/** “<41>” for one row, the rows in brackets otherwise. */
+function gramInWords(rows: readonly (readonly unknown[])[]): string {
+  if (rows.length === 0) return 'none: n is the rank';
+  const entry = (x: unknown) => (/^-?\d+$/.test(String(x)) ? integerInWords(String(x)) : String(x));
+  if (rows.length === 1) return `<${entry(rows[0]![0])}>`;
+  return `[${rows.map((row) => `[${row.map(entry).join(', ')}]`).join(', ')}]`;
+}
