@@ -29,7 +29,10 @@ export async function testDatabase(): Promise<TestDatabase> {
     schema,
     async drop() {
       if (failed) return;
-      await query(databaseUrl, `drop schema if exists ${schema} cascade; drop schema if exists ${schema}_queue cascade`);
+      await query(
+        databaseUrl,
+        `drop schema if exists ${schema} cascade; drop schema if exists ${schema}_queue cascade`,
+      );
     },
   };
 }

@@ -196,6 +196,8 @@ export interface VerdictWrite {
   readonly dimension: number | null;
   readonly orbits: bigint | null;
   readonly total: bigint | null;
+  /** One sentence on what was chosen and why, where the search had no plan before. */
+  readonly method?: string | undefined;
   readonly certificate: {
     readonly sha256: string;
     readonly raw: readonly Uint8Array[];

@@ -1,2 +1,4 @@
 export * from './door.ts';
-// openStore(options): Promise<Store> — waits for the schema number it needs; migrate(options): Promise<void> — under the advisory lock
+export { openStore, TimeZoneFault } from './open-store.ts';
+export { migrate, SchemaTooNew } from './migrate.ts';
+export { SchemaNameFault } from './database.ts';

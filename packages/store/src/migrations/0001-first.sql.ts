@@ -13,12 +13,14 @@ create table person (
   letters_broken boolean not null default true,
   appearance text not null default 'system' check (appearance in ('system', 'light', 'dark')),
   served_at timestamptz not null default '-infinity',
+  jump_after timestamptz not null default '-infinity',
   seen_at timestamptz,
   created_at timestamptz not null default now()
 );
 create unique index person_email on person (lower(email));
 
--- what one person may use; served_at above is when a worker last began something of theirs (fair turns)
+-- what one person may use. On the person: served_at is when a worker last began something of theirs (fair turns);
+-- before jump_after a new search of theirs does not jump the turn, so that others get back what jumping took
 create table allowance (
   person_id uuid primary key references person(id),
   workers integer not null check (workers >= 0),
@@ -71,9 +73,11 @@ create table question (
   document text not null,               -- as entered, canonical JSON with title and budget
   source_kind text not null,
   source_label text not null,
+  target text not null,                 -- JSON, for lists: a document can be megabytes long
+  scope text not null check (scope in ('one', 'all')),
   created_at timestamptz not null default now()
 );
-create index question_study on question (study_id, created_at desc, id);
+create index question_study on question (study_id, created_at desc, id desc);
 
 create table note (
   id uuid primary key default gen_random_uuid(),
@@ -83,7 +87,8 @@ create table note (
   text text not null,
   at timestamptz not null default now()
 );
-create index note_study on note (study_id, at desc, id);
+create index note_study on note (study_id, at desc, id desc);
+create index note_question on note (question_id, at desc, id desc) where question_id is not null;
 
 -- one execution of a question; state words and transitions: packages/contracts/src/states.ts
 create table search (
@@ -108,12 +113,15 @@ create table search (
   estimate text,                        -- JSON: mean, low, high of the nodes of the stage
   budget_cpu_ms bigint,
   cpu_ms bigint not null default 0,
-  had_quantum boolean not null default false,
+  had_quantum boolean not null default false,      -- false: may jump the turn
+  served_at timestamptz not null default '-infinity',
+  method_revision integer not null default 1,
+  ending_no integer not null default 1,            -- raised by each extension
   created_at timestamptz not null default now(),
   started_at timestamptz,
   ended_at timestamptz
 );
-create index search_open on search (state, created_at) where state in ('waiting', 'searching');
+create index search_turn on search (person_id, had_quantum, served_at, created_at) where state in ('waiting', 'searching');
 create index search_person on search (person_id, state);
 
 -- a piece of a search that one worker runs; every write by a worker is fenced by attempt
@@ -122,17 +130,18 @@ create table parcel (
   search_id uuid not null references search(id),
   phase text not null check (phase in ('choosing', 'listing', 'assembling', 'checking')),
   stage integer not null,
-  from_address text not null,           -- JSON list of child indices; '[]' is the root
-  to_address text,                      -- null is the end of the tree
+  from_address bigint[] not null,       -- child indices; '{}' is the root. Arrays compare in depth-first preorder
+  to_address bigint[],                  -- null is the end of the tree
   state text not null default 'waiting' check (state in ('waiting', 'leased', 'done', 'unneeded')),
   attempt integer not null default 0,
   station_id uuid,
   heartbeat_at timestamptz,
   leased_at timestamptz,
   yield_wanted boolean not null default false,
+  yield_for uuid,                                  -- the person whose new search asked for it
   share double precision not null default 0,       -- estimated share of the stage's tree
   share_done double precision not null default 0,  -- part of this parcel that is finished, 0 to 1
-  checkpoint bytea,
+  checkpoint text,
   checkpoint_sha256 text,
   method_revision integer not null default 1,
   nodes numeric not null default 0,
@@ -143,10 +152,11 @@ create table parcel (
   alone boolean not null default false,            -- after a crash it runs alone in its station
   alone_crashes integer not null default 0,
   result text                                      -- JSON, what the phase needs at its end
-);
+) with (fillfactor = 70);
 create index parcel_search on parcel (search_id, phase, stage);
+create unique index parcel_once on parcel (search_id, phase, stage, from_address) where phase in ('listing', 'checking');
 create index parcel_waiting on parcel (search_id) where state = 'waiting';
-create index parcel_leased on parcel (heartbeat_at) where state = 'leased';
+create index parcel_leased on parcel (station_id) where state = 'leased';
 
 -- embeddings found by a parcel, in its order; chunks past the last checkpoint are overwritten on resume
 create table parcel_chunk (
@@ -177,11 +187,7 @@ alter table blob alter column gz set storage external;
 create table certificate (
   sha256 text primary key,
   raw_bytes bigint not null,
-  chunks integer not null,
-  checker_line text not null,
-  checker_revision integer not null,
-  check_cpu_ms bigint not null,
-  checked_at timestamptz not null default now()
+  chunks integer not null
 );
 create table certificate_chunk (
   certificate_sha256 text not null references certificate(sha256),
@@ -189,9 +195,21 @@ create table certificate_chunk (
   blob_sha256 text not null references blob(sha256),
   primary key (certificate_sha256, no)
 );
+-- two searches of the same question share the bytes; each was checked anew
 create table search_certificate (
   search_id uuid primary key references search(id),
-  certificate_sha256 text not null references certificate(sha256)
+  certificate_sha256 text not null references certificate(sha256),
+  checker_line text not null,
+  checker_revision integer not null,
+  check_cpu_ms bigint not null,
+  checked_at timestamptz not null default now()
+);
+-- a certificate that is still being checked in parcels, or that the checker did not accept
+create table draft_chunk (
+  search_id uuid not null references search(id),
+  no integer not null,
+  blob_sha256 text not null references blob(sha256),
+  primary key (search_id, no)
 );
 
 create table usage_day (
@@ -209,6 +227,7 @@ create table station (
   busy integer not null default 0,
   memory_bytes bigint not null default 0,
   stand_by boolean not null default false,
+  alone_for bigint,                     -- a parcel that has to run alone here: nothing else is begun until it can
   started_at timestamptz not null default now(),
   heard_at timestamptz not null default now(),
   stopped_at timestamptz
@@ -248,7 +267,7 @@ create table idempotency (
   person_id uuid not null references person(id),
   key text not null,
   body_sha256 text not null,
-  question_id uuid not null references question(id),
+  question_id uuid not null references question(id) deferrable initially deferred,
   at timestamptz not null default now(),
   primary key (person_id, key)
 );

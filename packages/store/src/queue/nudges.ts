@@ -1,0 +1,70 @@
+/** Wakes stations: a nudge in the queue for work that must not be forgotten, NOTIFY for promptness, in the same transaction. */
+import type { DatabaseOptions, Sql } from '../database.ts';
+import { Listener } from './listener.ts';
+import type { NudgeQueue } from './nudge-queue.ts';
+
+export class Nudges {
+  private readonly callbacks = new Set<() => void>();
+  private readonly timers = new Set<NodeJS.Timeout>();
+  private readonly channel: string;
+  private readonly listener: Listener;
+  private opening: Promise<void> | null = null;
+
+  constructor(
+    options: DatabaseOptions,
+    private readonly queue: NudgeQueue,
+  ) {
+    this.channel = `${options.schema}_nudge`;
+    this.listener = new Listener(options, this.channel, () => this.callAll());
+  }
+
+  /** There is new work: kept until a station takes it. */
+  async work(tx: Sql): Promise<void> {
+    await this.queue.send(tx);
+    await this.notify(tx);
+  }
+
+  /** There may be work or advice: heard by whoever listens now. */
+  async notify(tx: Sql): Promise<void> {
+    await tx.query('select pg_notify($1, $2)', [this.channel, '']);
+  }
+
+  /** Calls back when something may have changed. Resolves when it listens. */
+  async subscribe(call: () => void): Promise<() => Promise<void>> {
+    this.opening ??= this.open();
+    try {
+      await this.opening;
+    } catch (error) {
+      this.opening = null;
+      throw error;
+    }
+    this.callbacks.add(call);
+    return async () => void this.callbacks.delete(call);
+  }
+
+  /** Calls back in this process only: for something that becomes possible after so many milliseconds. */
+  later(ms: number): void {
+    if (this.callbacks.size === 0) return;
+    const timer = setTimeout(() => {
+      this.timers.delete(timer);
+      this.callAll();
+    }, ms);
+    this.timers.add(timer);
+  }
+
+  async close(): Promise<void> {
+    for (const timer of this.timers) clearTimeout(timer);
+    this.callbacks.clear();
+    await this.listener.close();
+    await this.queue.close();
+  }
+
+  private async open(): Promise<void> {
+    await this.listener.open();
+    await this.queue.take(() => this.callAll());
+  }
+
+  private callAll(): void {
+    for (const call of this.callbacks) call();
+  }
+}
