@@ -1,6 +1,8 @@
-/** A first cover of a tree: intervals that abut from the root to the end, of roughly equal estimated size. */
+/**
+ * A first cover of a tree: intervals that abut from the root to the end. Shares are told as if all children of a node
+ * weighed the same; what turns out long is cut again while it runs.
+ */
 import { compareAddresses, type Address, type Interval } from './address.ts';
-import { probeForm } from './estimate.ts';
 import { openLadder } from './ladder.ts';
 import { LISTED } from './listing.ts';
 import type { Plan } from './plan.ts';
@@ -14,51 +16,51 @@ export interface CoverPiece extends Interval {
 
 interface Branch {
   readonly address: Address;
-  readonly size: number;
+  readonly share: number;
 }
 
-const PROBES = 4;
-const PROBE_STEPS = 20_000;
-/** A node with more children than this is cut into runs of siblings, not into single ones. */
-const MOST_CHILDREN = 256;
+/** Children that are counted; a node with more is cut among the first of them, the rest go with the last piece. */
+const COUNTED_CHILDREN = 20_000;
+/** Listing steps that one node's children may cost. */
+const COUNT_STEPS = 400_000;
+/** Listing steps of the whole cover. */
+const COVER_STEPS = 4_000_000;
 
 /** @param parcels how many pieces are wanted, roughly */
 export function cover(plan: Plan, stage: Stage, parcels: number): CoverPiece[] {
   const form = workingForm(plan);
-  let branches: Branch[] = [{ address: [], size: 1 }];
-  const whole = new Set<string>();
-  while (branches.length < parcels) {
-    const open = branches.filter((b) => b.address.length < form.rank && !whole.has(b.address.join()));
+  let branches: Branch[] = [{ address: [], share: 1 }];
+  const closed = new Set<Branch>();
+  for (let steps = 0; branches.length < parcels && steps < COVER_STEPS; ) {
+    const open = branches.filter((b) => b.address.length < form.rank && !closed.has(b));
     if (open.length === 0) break;
-    const largest = open.reduce((a, b) => (b.size > a.size ? b : a));
-    const children = childBranches(form, stage.dimension, largest.address);
-    if (children.length === 0) whole.add(largest.address.join());
-    branches = branches.flatMap((b) => (b === largest && children.length > 0 ? children : [b]));
+    const largest = open.reduce((a, b) => (b.share > a.share ? b : a));
+    const children = childBranches(form, stage.dimension, largest, parcels);
+    steps += children.steps;
+    if (children.branches.length === 0) closed.add(largest);
+    else branches = branches.flatMap((b) => (b === largest ? children.branches : [b]));
   }
   branches.sort((a, b) => compareAddresses(a.address, b.address));
-  const total = branches.reduce((sum, b) => sum + b.size, 0);
-  return branches.map((b, i) => ({
-    from: i === 0 ? [] : b.address,
-    to: branches[i + 1]?.address ?? null,
-    share: b.size / total,
-  }));
+  return branches.map((b, i) => ({ from: i === 0 ? [] : b.address, to: branches[i + 1]?.address ?? null, share: b.share }));
 }
 
-function childBranches(form: WorkingForm, dimension: number, address: Address): Branch[] {
+/** At most `most` runs of siblings. */
+function childBranches(form: WorkingForm, dimension: number, parent: Branch, most: number): { branches: Branch[]; steps: number } {
   const ladder = openLadder(form, dimension);
-  address.forEach((child, depth) => {
+  parent.address.forEach((child, depth) => {
     ladder.begin(depth);
     for (let i = 0; i <= child; i += 1) ladder.next(depth, Number.MAX_SAFE_INTEGER);
     ladder.descend(depth);
   });
-  ladder.begin(address.length);
+  const depth = parent.address.length;
+  ladder.begin(depth);
+  const last = ladder.steps + COUNT_STEPS;
   let count = 0;
-  while (count < 65_536 && ladder.next(address.length, Number.MAX_SAFE_INTEGER) === LISTED.found) count += 1;
-  const stride = Math.max(1, Math.ceil(count / MOST_CHILDREN));
-  const firsts = Array.from({ length: Math.ceil(count / stride) }, (_, i) => i * stride);
-  return firsts.map((first, i) => {
-    const below = [...address, first];
-    const estimated = probeForm(form, dimension, { probes: PROBES, seed: 1 + i, steps: PROBE_STEPS, below });
-    return { address: below, size: estimated.mean * stride };
-  });
+  while (count < COUNTED_CHILDREN && ladder.steps < last && ladder.next(depth, last - ladder.steps) === LISTED.found) count += 1;
+  const stride = Math.max(1, Math.ceil(count / most));
+  const branches = Array.from({ length: Math.ceil(count / stride) }, (_, i) => ({
+    address: [...parent.address, i * stride],
+    share: (parent.share * Math.min(stride, count - i * stride)) / count,
+  }));
+  return { branches, steps: ladder.steps };
 }

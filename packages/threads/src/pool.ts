@@ -42,15 +42,16 @@ export function openThreads(options: { readonly threads: number }): Threads {
       const words = new Int32Array(new SharedArrayBuffer(8));
       const { port1, port2 } = new MessageChannel();
       const abort = new AbortController();
-      port1.on('message', onMessage);
-      // the thread closes its end when it is done or dies: then every message has been delivered
-      const allSaid = new Promise<void>((resolve) => port1.once('close', resolve));
+      // the thread's last word is null: then every message before it has been delivered
+      const allSaid = new Promise<void>((resolve) =>
+        port1.on('message', (message: JobMessage | null) => (message === null ? resolve() : onMessage(message))),
+      );
       const end = pool.run(
         { job, words: words.buffer, port: port2 },
         { transferList: [port2], signal: abort.signal },
       ) as Promise<JobEnd<J>>;
       return {
-        end: end.finally(() => (abort.signal.aborted ? port1.close() : allSaid)),
+        end: end.then((answer) => allSaid.then(() => answer)).finally(() => port1.close()),
         yield: () => void Atomics.compareExchange(words, 0, COMMAND.goOn, COMMAND.yield),
         stop: () => void Atomics.store(words, 0, COMMAND.stop),
         cut: () => void Atomics.compareExchange(words, 0, COMMAND.goOn, COMMAND.cut),

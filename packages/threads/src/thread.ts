@@ -13,6 +13,6 @@ export default function runTask(task: ThreadTask): JobEnd<Job> {
   try {
     return runJob(task.job, { words: new Int32Array(task.words), say: (message) => task.port.postMessage(message) });
   } finally {
-    task.port.close();
+    task.port.postMessage(null);
   }
 }
