@@ -17,10 +17,8 @@ export interface Polling<T> {
   readonly value: ShallowRef<T | null>;
   /** Why the last round failed; null after one that did not. What was read before stays. */
   readonly error: ShallowRef<unknown>;
-  /** Reads at once, and goes on from there. */
-  readonly refresh: () => void;
-  /** Forgets what was read, for when the address changes, and reads at once. */
-  readonly restart: () => void;
+  /** Reads at once, and goes on from there. With `anew` an answer “as before” does not do: what is asked for changed. */
+  readonly refresh: (anew?: 'anew') => void;
 }
 
 const browser = {
@@ -67,11 +65,8 @@ export function usePolling<T>(
   return {
     value,
     error,
-    refresh: () => poller.now(),
-    restart: () => {
-      etag = null;
-      value.value = null;
-      error.value = null;
+    refresh: (anew) => {
+      if (anew !== undefined) etag = null;
       poller.now();
     },
   };

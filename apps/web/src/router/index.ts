@@ -1,6 +1,6 @@
 /** Addresses and their pages. Every page is loaded when it is first visited. */
-import type { Component } from 'vue';
 import { createRouter, createWebHistory, type RouteRecordRaw, type Router } from 'vue-router';
+import { newQuestionPage } from './pages.ts';
 import { useSession } from '../stores/session.ts';
 
 declare module 'vue-router' {
@@ -11,11 +11,6 @@ declare module 'vue-router' {
   }
 }
 
-/** Found by pattern, so that the frame can be built before this page stands. */
-const newQuestion =
-  import.meta.glob<{ default: Component }>('../pages/NewQuestion.vue')['../pages/NewQuestion.vue'] ??
-  (() => import('../pages/NotFound.vue'));
-
 const routes: RouteRecordRaw[] = [
   { path: '/', redirect: '/studies' },
   { path: '/sign-in', component: () => import('../pages/SignIn.vue'), meta: { open: true } },
@@ -24,8 +19,8 @@ const routes: RouteRecordRaw[] = [
   { path: '/password/:key', component: () => import('../pages/ResetPassword.vue'), meta: { open: true } },
   { path: '/studies', component: () => import('../pages/StudyList.vue') },
   { path: '/studies/:id', component: () => import('../pages/StudyPage.vue'), props: true },
-  { path: '/studies/:studyId/new', component: newQuestion, props: true },
-  { path: '/new', component: newQuestion },
+  { path: '/studies/:studyId/new', component: newQuestionPage, props: true },
+  { path: '/new', component: newQuestionPage },
   { path: '/questions/:id', component: () => import('../pages/QuestionPage.vue'), props: true },
   { path: '/pool', component: () => import('../pages/PoolPage.vue') },
   { path: '/account', component: () => import('../pages/AccountPage.vue') },
