@@ -122,10 +122,15 @@ export function openPool(context: PoolContext): PoolStore {
         rows,
         limit,
         (row) => [row.created_key, row.id],
-        ({ created_at, created_key: _, sent_at, ...row }) => ({
-          ...row,
+        ({ id, to, subject, state, attempts, fault, created_at, sent_at }) => ({
+          id,
+          to,
+          subject,
+          state,
+          attempts,
           createdAt: created_at.toISOString(),
           sentAt: sent_at?.toISOString() ?? null,
+          fault,
         }),
       );
     },
