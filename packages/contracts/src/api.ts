@@ -217,7 +217,10 @@ export const health = z.strictObject({
 });
 
 export function page<T extends z.ZodType>(item: T) {
-  return z.strictObject({ items: z.array(item), next: z.string().nullable().describe('cursor of the next page') });
+  return z.strictObject({
+    items: z.array(item).readonly(),
+    next: z.string().nullable().describe('cursor of the next page'),
+  });
 }
 export const pageQuery = z.object({
   after: z.string().max(200).optional(),

@@ -100,18 +100,24 @@ export interface SumSource {
 }
 export type Source = PlainSource | SumSource;
 
-export const source: z.ZodType<Source> = z.lazy(() =>
-  z.discriminatedUnion('kind', [
-    matrixSource,
-    treeSource,
-    fractionSource,
-    seifertSource,
-    montesinosSource,
-    diagramSource,
-    graphSource,
-    z.strictObject({ kind: z.literal('sum'), of: z.array(source).min(1).max(LIMITS.summands) }),
-  ]),
-) as z.ZodType<Source>;
+const sourceParts = [
+  matrixSource,
+  treeSource,
+  fractionSource,
+  seifertSource,
+  montesinosSource,
+  diagramSource,
+  graphSource,
+] as const;
+
+export const source: z.ZodType<Source> = z
+  .lazy(() =>
+    z.discriminatedUnion('kind', [
+      ...sourceParts,
+      z.strictObject({ kind: z.literal('sum'), of: z.array(source).min(1).max(LIMITS.summands) }),
+    ]),
+  )
+  .openapi('Source') as z.ZodType<Source>;
 
 const dimension = z.number().int().min(0).max(LIMITS.dimension);
 export const target = z.union([

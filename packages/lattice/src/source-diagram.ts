@@ -29,8 +29,11 @@ export function diagramRegions(pd: readonly (readonly bigint[])[]): {
   }
   for (const queue = [0]; queue.length > 0;) {
     const x = queue.pop()!;
-    for (const label of pd[x]!)
-      for (const [y] of ends.get(label)!) if (!reached.has(y)) reached.add(y) && queue.push(y);
+    for (const [y] of pd[x]!.flatMap((label) => ends.get(label)!)) {
+      if (reached.has(y)) continue;
+      reached.add(y);
+      queue.push(y);
+    }
   }
   if (reached.size < pd.length)
     throw new SourceFault(
