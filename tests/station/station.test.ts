@@ -75,7 +75,7 @@ describe('a search', () => {
   });
 
   it('has a long parcel cut again while a worker is idle', async () => {
-    const { id, document } = await pool.ask(ada, 6_000, 'spin 120000');
+    const { id, document } = await pool.ask(ada, 6_000, 'lopsided; spin 120000');
     await pool.reaches(ada, id, ['settled', 'broken'], 90);
     expect(await pool.certificate(id)).toBe(rightCertificate(document));
     const listing = (await pool.parcels(id)).filter((p) => p.phase === 'listing');
@@ -139,8 +139,11 @@ describe('a station', () => {
     await until('it runs', async () => (await pool.parcels(id)).some((p) => p.state === 'leased'));
     const [row] = await pool.store.pool.stations();
     await pool.store.pool.standBy(admin, row!.id, true);
-    await until('it stands by', async () => (await pool.store.pool.stations())[0]?.state === 'standing by');
-    expect(await nothingLeased(id)).toBe(true);
+    await until('it stands by', async () => {
+      const [now] = await pool.store.pool.stations();
+      return now?.state === 'standing by' && (await nothingLeased(id));
+    });
+    expect((await pool.view(ada, id)).state).toBe('waiting');
     await pool.store.pool.standBy(admin, row!.id, false);
     await pool.reaches(ada, id, ['settled']);
   });

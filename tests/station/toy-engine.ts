@@ -4,13 +4,13 @@ import { MessageChannel, Worker } from 'node:worker_threads';
 import type { Engine } from '@palmette/station';
 import type { Job, JobEnd, JobMessage } from '@palmette/threads';
 
-const FILE = fileURLToPath(new URL('./toy-thread.ts', import.meta.url));
+const FILE = fileURLToPath(new URL('./toy-worker.mjs', import.meta.url));
 
 export function openToyEngine(size: number): Engine {
   const idle: Worker[] = [];
   const all = new Set<Worker>();
   const begin = () => {
-    const worker = new Worker(FILE, { execArgv: ['--conditions=source', '--import', 'tsx'] });
+    const worker = new Worker(FILE, { execArgv: ['--conditions=source'] });
     all.add(worker);
     worker.once('exit', () => all.delete(worker));
     return worker;

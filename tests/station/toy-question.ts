@@ -20,6 +20,8 @@ export interface ToyPlan {
   /** The check is run in parcels. */
   readonly longCheck: boolean;
   readonly stages: number;
+  /** The last parcel of the cover has nearly everything. */
+  readonly lopsided: boolean;
 }
 
 export const TOY_PARCELS = 6;
@@ -51,6 +53,7 @@ export function readToy(document: string): ToyPlan {
     quick: title.includes('quick'),
     longCheck: title.includes('long check'),
     stages: after('stages') ?? 1,
+    lopsided: title.includes('lopsided'),
   };
 }
 

@@ -68,7 +68,7 @@ function choose(plan: ToyPlan): ChooseEnd {
 }
 
 function ahead(plan: ToyPlan, no: number, results: StageAhead['results']): StageAhead {
-  const edge = (k: number) => [Math.floor((plan.n * k) / TOY_PARCELS)];
+  const edge = (k: number) => [Math.floor((plan.n * k) / (plan.lopsided ? 100 : TOY_PARCELS))];
   return {
     stage: { no, dimension: 3 + no, purpose: plan.oneAt === null ? 'all' : 'one', whole: false },
     results,

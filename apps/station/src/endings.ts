@@ -52,12 +52,14 @@ export interface Verdict {
   readonly certificate: readonly Uint8Array[];
   readonly sha256: string;
   readonly checker: Settled['checker'];
+  /** One sentence on what was chosen, where no plan has said it. */
+  readonly method?: string;
 }
 
 /** Settled only if the checker said VERIFIED on the bytes as written; otherwise broken, with the bytes kept. */
 export async function settle(held: HeldParcel, desk: Desk, verdict: Verdict): Promise<void> {
   const { searchId } = held.lease;
-  const { facts, certificate, sha256, checker } = verdict;
+  const { facts, certificate, sha256, checker, method } = verdict;
   if (checker.verdict !== 'VERIFIED') {
     await desk.patience.untilAnswered('a rejected certificate', () => desk.work.keepDraft(searchId, certificate));
     return breakDown(
@@ -71,6 +73,7 @@ export async function settle(held: HeldParcel, desk: Desk, verdict: Verdict): Pr
       searchId,
       {
         ...facts,
+        method,
         certificate: {
           sha256,
           raw: certificate,
@@ -82,8 +85,5 @@ export async function settle(held: HeldParcel, desk: Desk, verdict: Verdict): Pr
       desk.letters,
     ),
   );
-  desk.log.info(
-    { search: searchId, verdict: facts.verdict, cpuMs: first ? held.lease.cpuMs : undefined },
-    first ? 'settled' : 'had ended before',
-  );
+  desk.log.info({ search: searchId, verdict: facts.verdict }, first ? 'settled' : 'held, spent or ended meanwhile');
 }

@@ -20,7 +20,10 @@ export async function runParcel(held: HeldParcel, desk: Desk): Promise<void> {
 
 async function run(held: HeldParcel, desk: Desk): Promise<void> {
   const { lease } = held;
-  if (lease.budgetLeftMs !== null && lease.budgetLeftMs <= 0) return spend(held, desk, 'budget');
+  if (lease.budgetLeftMs !== null && lease.budgetLeftMs <= 0) {
+    await spend(held, desk, 'budget');
+    return giveBack(held, desk);
+  }
   switch (lease.phase) {
     case 'choosing':
       return choose(held, desk);

@@ -30,5 +30,10 @@ export async function runStationProcess(openEngine: (config: StationConfig) => E
     );
   };
   for (const signal of ['SIGTERM', 'SIGINT', 'SIGHUP']) process.on(signal, stop);
-  station = await openStation(config, openEngine(config), log);
+  try {
+    station = await openStation(config, openEngine(config), log);
+  } catch (error) {
+    log.fatal({ fault: String(error) }, 'could not start');
+    process.exit(1);
+  }
 }

@@ -19,8 +19,6 @@ import { SweepLoop } from './sweep-loop.ts';
 const OUTAGE_PAUSE_MS = 1_000;
 /** A search whose cut nobody took is not cut again for this long: its owner may be at the cap. */
 const CUT_PAUSE_MS = 10_000;
-/** How long the station tries to be empty, so that a parcel that crashed can run alone. */
-const EMPTYING_MS = 15_000;
 /** At the end of the process: for a job that cannot yield, and then for all that is still to be written. */
 const FINISH_GRACE_MS = 4_000;
 const WRITE_GRACE_MS = 8_000;
@@ -34,17 +32,13 @@ export class Station {
   private readonly notCutBefore = new Map<string, number>();
   private standBy = false;
   private stopping = false;
-  private emptyUntilMs = 0;
   private elsewhereIdle = false;
   private loop: Promise<void> = Promise.resolve();
   private stopListening: () => Promise<void> = async () => {};
 
   constructor(private readonly desk: Desk) {
     this.heartbeat = new Heartbeat(desk, () => this.beat());
-    this.sweeps = new SweepLoop(desk, (swept) => {
-      if (swept.returned > 0) this.makeRoom();
-      this.bell.ring();
-    });
+    this.sweeps = new SweepLoop(desk, () => this.bell.ring());
   }
 
   async start(): Promise<void> {
@@ -109,18 +103,11 @@ export class Station {
   /** Asked with no worker free, too: then the store may ask a running parcel to yield for a short question. */
   private async claim(): Promise<Lease | null> {
     const { work, engine } = this.desk;
-    const freeWorkers = this.isFull() ? 0 : this.desk.config.workers - this.held.size;
-    const canRunAlone = this.held.size === 0;
-    const lease = await work.claim(this.id, { freeWorkers, revisions: engine.revisions, canRunAlone });
-    if (canRunAlone) this.emptyUntilMs = 0;
-    if (lease === null || freeWorkers > 0) return lease;
-    await work.release(lease);
-    return null;
-  }
-
-  private isFull(): boolean {
-    if (this.held.size > 0 && performance.now() < this.emptyUntilMs) return true;
-    return [...this.held.keys()].some((held) => held.lease.alone);
+    return work.claim(this.id, {
+      freeWorkers: this.desk.config.workers - this.held.size,
+      revisions: engine.revisions,
+      canRunAlone: this.held.size === 0,
+    });
   }
 
   private take(lease: Lease): void {
@@ -132,13 +119,6 @@ export class Station {
       this.bell.ring();
     });
     this.held.set(held, run);
-  }
-
-  /** After a crash the parcel runs alone: the station empties itself once, so that it gets its turn. */
-  private makeRoom(): void {
-    if (this.held.size === 0) return;
-    this.emptyUntilMs = performance.now() + EMPTYING_MS;
-    for (const held of this.held.keys()) held.follow('yield');
   }
 
   private async beat(): Promise<void> {
@@ -167,7 +147,7 @@ export class Station {
   /** An idle worker and a long parcel: the parcel is cut, and the nudge of the new piece finds the worker. */
   private cutIfIdle(): void {
     const idle = this.held.size < this.desk.config.workers || this.elsewhereIdle;
-    if (!idle || this.standBy || this.stopping || this.isFull()) return;
+    if (!idle || this.standBy || this.stopping) return;
     const now = performance.now();
     const cuttable = [...this.held.keys()].filter((h) => (this.notCutBefore.get(h.lease.searchId) ?? 0) <= now);
     const held = longest(cuttable, now);

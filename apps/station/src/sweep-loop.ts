@@ -13,7 +13,7 @@ export class SweepLoop {
 
   constructor(
     private readonly desk: Desk,
-    private readonly onSwept: (swept: { returned: number; nudged: number }) => void,
+    private readonly onSwept: () => void,
   ) {}
 
   start(): void {
@@ -33,7 +33,7 @@ export class SweepLoop {
       if (quietMs > config.leaseSeconds * 1000) {
         const swept = await work.sweep({ leaseSeconds: config.leaseSeconds, letters });
         if (swept.returned > 0) log.warn(swept, 'took back parcels of a station that is silent');
-        if (swept.returned + swept.nudged > 0) this.onSwept(swept);
+        if (swept.returned + swept.nudged > 0) this.onSwept();
       }
     } catch (error) {
       if (isOutage(error)) patience.noteOutage(error, 'a sweep');

@@ -22,7 +22,7 @@ describe('the letter about an ending', () => {
     const letter = endingLetter(facts, place);
     expect(letter.subject).toBe('Embeds in Z^9: P(3, 5, −7)');
     expect(letter.body).toContain(
-      'The search that you started on 3 March at 22:10 (UTC) is settled. Embeds in Z^9, one orbit, list complete. Ground: exhaustion; checked. 13 h 31 min of CPU time.',
+      'The search that was started on 3 March at 22:10 (UTC) is settled. Embeds in Z^9, one orbit, list complete. Ground: exhaustion; checked. 13 h 31 min of CPU time.',
     );
     expect(letter.body).toContain('https://palmette.example/questions/q1');
     expect(letter.body).toContain('letters are on for settled searches; change it on your account page');

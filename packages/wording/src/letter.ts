@@ -96,8 +96,9 @@ function broken(facts: EndingFacts, place: LetterPlace): Parts {
   };
 }
 
+/** Not “that you started”: members of the study get the letter too. */
 function begun(facts: EndingFacts, place: LetterPlace): string {
-  return `The search that you started ${momentInWords(facts.startedAt, place.timeZone)}`;
+  return `The search that was started ${momentInWords(facts.startedAt, place.timeZone)}`;
 }
 
 /** “Embeds in Z^9”, “Excluded from Z^8”, “Excluded from every Z^n”. */
