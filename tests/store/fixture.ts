@@ -38,6 +38,8 @@ export interface Fixture {
   ): Promise<string>;
   station(workers?: number, store?: Store): Promise<string>;
   claim(station: string, store?: Store, alone?: boolean): Promise<Lease | null>;
+  /** Nothing of an earlier test runs or waits, and no station of it is there. */
+  clear(): Promise<void>;
   /** Waits until the condition holds; fails after ten seconds. */
   until(what: string, look: () => Promise<boolean> | boolean): Promise<void>;
 }
@@ -111,6 +113,11 @@ export async function openFixture(options: Partial<StoreOptions> = {}): Promise<
     },
     claim: (station, at = store, alone = true) =>
       at.work.claim(station, { freeWorkers: 1, revisions: [1], canRunAlone: alone }),
+    async clear() {
+      await client.query(`update parcel set state = 'unneeded' where state in ('waiting', 'leased')`);
+      await client.query(`update search set state = 'withdrawn' where state not in ('settled', 'broken')`);
+      await client.query('update station set stopped_at = now() where stopped_at is null');
+    },
     async until(what, look) {
       for (const deadline = Date.now() + 10_000; Date.now() < deadline;) {
         if (await look()) return;
