@@ -5,14 +5,20 @@
 import type { Transaction } from '../database.ts';
 import { NOT_HEARD } from '../questions/place.ts';
 
-/** `emptying` while the station still runs something else; the search it is kept for once it is empty; else null. */
+/** A station was emptied for this parcel. */
+export interface Reserved {
+  readonly searchId: string;
+  readonly parcelId: string;
+}
+
+/** `emptying` while the station still runs something else; what it is kept for once it is empty; else null. */
 export async function prepareAlone(
   tx: Transaction,
   stationId: string,
   empty: boolean,
-): Promise<'emptying' | { readonly searchId: string } | null> {
-  const [kept] = await tx.query<{ search_id: string | null }>(
-    `select p.search_id from station t
+): Promise<'emptying' | Reserved | null> {
+  const [kept] = await tx.query<{ search_id: string | null; parcel_id: string }>(
+    `select s.id as search_id, t.alone_for as parcel_id from station t
      left join parcel p on p.id = t.alone_for and p.state = 'waiting' and p.alone
      left join search s on s.id = p.search_id and s.state in ('waiting', 'searching')
      where t.id = $1 and t.alone_for is not null`,
@@ -21,7 +27,7 @@ export async function prepareAlone(
   if (kept === undefined) return null;
   if (kept.search_id !== null && !empty) return 'emptying';
   await tx.change('update station set alone_for = null where id = $1', [stationId]);
-  return kept.search_id === null ? null : { searchId: kept.search_id };
+  return kept.search_id === null ? null : { searchId: kept.search_id, parcelId: kept.parcel_id };
 }
 
 /** False if another living station empties itself for the search's parcels already. */

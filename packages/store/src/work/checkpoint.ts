@@ -7,6 +7,7 @@ import type { Advice, CheckpointWrite, Lease } from '../door.ts';
 import { packed } from '../certificates/blobs.ts';
 import { checksum, fencedOff, lockSearch, type LockedSearch } from './lease.ts';
 import { changedFigures } from './progress.ts';
+import { storedPart } from './share.ts';
 import type { WorkContext } from './work-context.ts';
 
 /** CPU time for which a new search may jump the turn. */
@@ -52,7 +53,7 @@ export async function writeCheckpoint(
   const cpuMs = Math.max(0, Math.round(write.cpuMs));
   const [parcel] = await tx.query<{ yield_wanted: boolean; recovered: boolean }>(
     `update parcel p set checkpoint = coalesce($3, p.checkpoint), checkpoint_sha256 = coalesce($4, p.checkpoint_sha256),
-       nodes = p.nodes + $5, orbits = p.orbits + $6, cpu_ms = p.cpu_ms + $7, share_done = least(1, greatest(0, $8::float8)),
+       nodes = p.nodes + $5, orbits = p.orbits + $6, cpu_ms = p.cpu_ms + $7, share_done = $8,
        chunks = $9, heartbeat_at = clock_timestamp(),
        crashes = case when before.got_on then 0 else p.crashes end,
        alone_crashes = case when before.got_on then 0 else p.alone_crashes end,
@@ -69,7 +70,7 @@ export async function writeCheckpoint(
       write.nodes.toString(),
       write.orbits.toString(),
       cpuMs,
-      write.shareDone,
+      storedPart(write.shareDone),
       lease.chunks + chunks.length,
     ],
   );

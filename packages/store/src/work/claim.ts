@@ -5,7 +5,7 @@
  */
 import type { Transaction } from '../database.ts';
 import type { Lease, WorkStore } from '../door.ts';
-import { prepareAlone, reserveForAlone } from './alone.ts';
+import { prepareAlone, reserveForAlone, type Reserved } from './alone.ts';
 import { askToYield } from './ask-to-yield.ts';
 import { lockClaims } from './claim-lock.ts';
 import { readLease, type LeaseRow } from './lease.ts';
@@ -55,7 +55,7 @@ const NEXT_PARCEL = `
   select id from parcel
   where search_id = $1 and state = 'waiting' and (phase = 'choosing' or method_revision = any($2::int[]))
     and (not alone or $3)
-  order by alone, share_done > 0 desc, from_address, id limit 1 for no key update`;
+  order by id = $4::bigint desc nulls last, alone, share_done > 0 desc, from_address, id limit 1 for no key update`;
 
 /** Tries again when a search that was looked at has ended by the time its row is locked. */
 const MOST_TRIES = 5;
@@ -84,7 +84,11 @@ export async function claim(context: WorkContext, stationId: string, options: Cl
         skipped.add(next.person_id); // another station empties itself for it
         continue;
       }
-      const lease = await leaseFrom(tx, stationId, next.search_id, options.revisions, runsAlone);
+      const lease = await leaseFrom(tx, stationId, next.search_id, [
+        options.revisions,
+        runsAlone,
+        reserved?.parcelId ?? null,
+      ]);
       if (lease !== null) return lease;
     }
     const waitMs = await askToYield(tx, candidates);
@@ -114,7 +118,7 @@ async function openStation(
 function inTurn(
   candidates: readonly Candidate[],
   skipped: ReadonlySet<string>,
-  reserved: { readonly searchId: string } | null,
+  reserved: Reserved | null,
 ): Candidate | undefined {
   const may = candidates.filter((c) => c.running < c.workers && !skipped.has(c.person_id));
   return (reserved && may.find((c) => c.search_id === reserved.searchId)) ?? may[0];
@@ -124,14 +128,13 @@ async function leaseFrom(
   tx: Transaction,
   stationId: string,
   searchId: string,
-  revisions: readonly number[],
-  runsAlone: boolean,
+  which: readonly [revisions: readonly number[], runsAlone: boolean, first: string | null],
 ): Promise<Lease | null> {
   const [search] = await tx.query<{ state: string }>('select state from search where id = $1 for no key update', [
     searchId,
   ]);
   if (search?.state !== 'waiting' && search?.state !== 'searching') return null;
-  const [parcel] = await tx.query<{ id: string }>(NEXT_PARCEL, [searchId, revisions, runsAlone]);
+  const [parcel] = await tx.query<{ id: string }>(NEXT_PARCEL, [searchId, ...which]);
   if (parcel === undefined) return null;
   await tx.change(
     `update parcel set state = 'leased', attempt = attempt + 1, station_id = $2, leased_at = clock_timestamp(),

@@ -7,6 +7,7 @@ import type { CheckpointWrite, Lease } from '../door.ts';
 import { packChunks, writeCheckpoint } from './checkpoint.ts';
 import { fencedOff, lockSearch, settleDown, type LockedSearch } from './lease.ts';
 import { changedState } from './progress.ts';
+import { storedPart, storedShare } from './share.ts';
 import type { WorkContext } from './work-context.ts';
 
 /** Back to waiting with its last checkpoint. @throws FencedOff */
@@ -37,32 +38,35 @@ export async function recut(
   mid: readonly number[],
   shareKept: number,
 ): Promise<Lease> {
-  const kept = Math.min(1, Math.max(0, shareKept));
+  const kept = storedPart(shareKept);
   await database.transaction(async (tx) => {
     const search = await lockSearch(tx, lease.searchId);
     const [piece] = await tx.query<{
       to_address: number[] | null;
       share: number;
+      share_done: number;
       method_revision: number;
       inside: boolean;
     }>(
-      `select to_json(to_address) as to_address, share, method_revision,
+      `select to_json(to_address) as to_address, share, share_done, method_revision,
          from_address < $3::bigint[] and (to_address is null or $3::bigint[] < to_address) as inside
        from parcel where id = $1 and attempt = $2 and state = 'leased' for no key update`,
       [lease.parcelId, lease.attempt, mid],
     );
     if (piece === undefined) throw fencedOff(lease);
     if (!piece.inside) throw new CutFault(`a cut at ${JSON.stringify(mid)} lies outside the parcel`);
-    await tx.change(
-      `update parcel set to_address = $2, share = share * $3,
-         share_done = case when $3::float8 > 0 then least(1, share_done / $3::float8) else 1 end
-       where id = $1`,
-      [lease.parcelId, mid, kept],
-    );
+    const done = kept > 0 ? storedPart(piece.share_done / kept) : 1;
+    await tx.change('update parcel set to_address = $2, share = $3, share_done = $4 where id = $1', [
+      lease.parcelId,
+      mid,
+      storedShare(piece.share * kept),
+      done,
+    ]);
+    const rest = storedShare(piece.share * (1 - kept));
     await tx.change(
       `insert into parcel (search_id, phase, stage, from_address, to_address, share, method_revision)
        values ($1, $2, $3, $4, $5, $6, $7)`,
-      [search.id, lease.phase, lease.stage, mid, piece.to_address, piece.share * (1 - kept), piece.method_revision],
+      [search.id, lease.phase, lease.stage, mid, piece.to_address, rest, piece.method_revision],
     );
     await changedState(tx, search.id);
     await nudges.notify(tx);

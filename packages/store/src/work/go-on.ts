@@ -2,6 +2,7 @@
 import { FencedOff, type WorkStore } from '../door.ts';
 import { lockSearch, settleDown } from './lease.ts';
 import { changedState, forgetRate } from './progress.ts';
+import { storedShare } from './share.ts';
 import type { WorkContext } from './work-context.ts';
 
 type Next = Parameters<WorkStore['goOn']>[1];
@@ -41,7 +42,9 @@ export async function goOn({ database, nudges }: WorkContext, searchId: string, 
       ],
     );
     for (let at = 0; at < next.parcels.length; at += BATCH) {
-      const batch = next.parcels.slice(at, at + BATCH).map(({ from, to, share }) => ({ from, to, share }));
+      const batch = next.parcels
+        .slice(at, at + BATCH)
+        .map(({ from, to, share }) => ({ from, to, share: storedShare(share) }));
       await tx.change(
         `insert into parcel (search_id, phase, stage, from_address, to_address, share, method_revision)
          select s.id, $2, $3, ${address('p.from')}, case when p.to is not null then ${address('p.to')} end, p.share, s.method_revision
