@@ -11,7 +11,8 @@ import {
 
 describe('spans', () => {
   it.each([
-    [0, 'under 1 ms'],
+    [0, '0 s'],
+    [0.0004, 'under 1 ms'],
     [0.004, '4 ms'],
     [0.9999, '1.0 s'],
     [4.24, '4.2 s'],

@@ -2,6 +2,7 @@
 
 /** @param seconds not negative; fractions are welcome */
 export function spanInWords(seconds: number): string {
+  if (seconds <= 0) return '0 s';
   if (seconds < 0.001) return 'under 1 ms';
   if (seconds < 0.9995) return `${Math.round(seconds * 1000)} ms`;
   if (seconds < 9.95) return `${seconds.toFixed(1)} s`;
