@@ -49,13 +49,21 @@ export interface PoolUnderTest {
     title?: string,
     budgetCpuMs?: number,
   ): Promise<{ id: string; document: string }>;
+  askDocument(
+    by: Actor & { readonly studyId: string },
+    document: string,
+    sourceLabel: string,
+    title?: string,
+    budgetCpuMs?: number,
+  ): Promise<{ id: string; document: string }>;
   view(by: Actor, id: string): Promise<Omit<QuestionView, 'document'>>;
   parcels(questionId: string): Promise<ParcelRow[]>;
   /** Waits until a question is in one of the states. */
   reaches(by: Actor, id: string, states: readonly string[], seconds?: number): Promise<Omit<QuestionView, 'document'>>;
   /** The certificate's text, which must be what an uninterrupted count gives. */
   certificate(id: string): Promise<string>;
-  station(name: string, workers: number, env?: Readonly<Record<string, string>>): Promise<ToyStation>;
+  /** @param file what to run: the toy's station, or the real one */
+  station(name: string, workers: number, env?: Readonly<Record<string, string>>, file?: string): Promise<ToyStation>;
   close(): Promise<void>;
 }
 
@@ -96,6 +104,18 @@ export async function startPool(database: {
     return seen;
   };
 
+  const askDocument: PoolUnderTest['askDocument'] = async (by, document, sourceLabel, title, budgetCpuMs) => {
+    const { id } = await store.questions.ask(by, {
+      studyId: by.studyId,
+      title: title ?? null,
+      document,
+      sourceKind: 'fraction',
+      sourceLabel,
+      budgetCpuMs: budgetCpuMs ?? null,
+    });
+    return { id, document };
+  };
+
   return {
     store,
     sql,
@@ -112,18 +132,8 @@ export async function startPool(database: {
       const study = await store.studies.make(actor, `Study of ${name}`);
       return { ...actor, studyId: study.id };
     },
-    async ask(by, n, title = '', budgetCpuMs) {
-      const document = toyDocument(n, title);
-      const { id } = await store.questions.ask(by, {
-        studyId: by.studyId,
-        title,
-        document,
-        sourceKind: 'fraction',
-        sourceLabel: `${n}/1`,
-        budgetCpuMs: budgetCpuMs ?? null,
-      });
-      return { id, document };
-    },
+    ask: (by, n, title = '', budgetCpuMs) => askDocument(by, toyDocument(n, title), `${n}/1`, title, budgetCpuMs),
+    askDocument,
     view,
     parcels: (questionId) =>
       sql<ParcelRow>(
@@ -147,8 +157,8 @@ export async function startPool(database: {
       for await (const chunk of kept.chunks) parts.push(chunk);
       return Buffer.concat(parts).toString('utf8');
     },
-    async station(name, workers, env = {}) {
-      const child = spawn(process.execPath, [...FROM_SOURCE, 'tests/station/toy-station.ts'], {
+    async station(name, workers, env = {}, file = 'tests/station/toy-station.ts') {
+      const child = spawn(process.execPath, [...FROM_SOURCE, file], {
         cwd: root,
         stdio: ['ignore', 'pipe', 'pipe'],
         env: {
