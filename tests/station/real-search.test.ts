@@ -75,7 +75,7 @@ describe('a real search', () => {
 
   it.each([
     ['17/5, the least n', { kind: 'fraction', p: 17, q: 5 }, { least: {} }, { verdict: 'embeds', dimension: 5 }],
-    // Jacobi and Lagrange aside, 17 is no square: MATHEMATICS.md, the determinant at n = rank
+    // at n = rank the determinant has to be a square, and 17 is none (MATHEMATICS.md, arithmetic grounds)
     [
       '17/5 at its rank',
       { kind: 'fraction', p: 17, q: 5 },

@@ -75,12 +75,33 @@ describe('a search', () => {
   });
 
   it('has a long parcel cut again while a worker is idle', async () => {
-    const { id, document } = await pool.ask(ada, 6_000, 'lopsided; spin 120000');
+    const { id, document } = await pool.ask(ada, 3_000, 'lopsided; spin 120000');
     await pool.reaches(ada, id, ['settled', 'broken'], 90);
     expect(await pool.certificate(id)).toBe(rightCertificate(document));
     const listing = (await pool.parcels(id)).filter((p) => p.phase === 'listing');
-    expect(listing.reduce((sum, p) => sum + Number(p.nodes), 0)).toBe(6_000);
+    expect(listing.reduce((sum, p) => sum + Number(p.nodes), 0)).toBe(3_000);
     expect(listing.length).toBeGreaterThan(TOY_PARCELS);
+  });
+});
+
+describe('a short question', () => {
+  it('is answered while every worker is busy with a long search, which goes on from where it was', async () => {
+    const long = await pool.ask(ada, 100_000_000, 'spin 2000');
+    await until('both workers are busy, past the first turn', async () => {
+      const parcels = await pool.parcels(long.id);
+      const cpuMs = parcels.reduce((sum, p) => sum + Number(p.cpu_ms), 0);
+      return parcels.filter((p) => p.state === 'leased').length === 2 && cpuMs > 2_500;
+    });
+    const short = await pool.ask(ada, 2_000, 'quick');
+    await pool.reaches(ada, short.id, ['settled'], 10); // a parcel of the long one would run for a minute
+    await until('the long one has both workers again', async () => {
+      const leased = (await pool.parcels(long.id)).filter((p) => p.state === 'leased');
+      return leased.length === 2;
+    });
+    const parcels = await pool.parcels(long.id);
+    expect(parcels.every((p) => p.crashes === 0)).toBe(true);
+    expect(parcels.some((p) => p.attempt > 1 || (p.state === 'waiting' && Number(p.nodes) > 0))).toBe(true);
+    await pool.store.questions.withdraw(ada, long.id);
   });
 });
 
@@ -100,7 +121,7 @@ describe('its owner', () => {
   });
 
   it('holds and resumes it; it goes on from where it was', async () => {
-    const { id, document } = await pool.ask(ada, 30_000, 'spin 10000');
+    const { id, document } = await pool.ask(ada, 20_000, 'spin 10000');
     await until('it has got somewhere', async () => (await pool.parcels(id)).some((p) => Number(p.nodes) > 0));
     await pool.store.questions.hold(ada, id);
     await until(
@@ -115,11 +136,11 @@ describe('its owner', () => {
     await pool.store.questions.resume(ada, id);
     await pool.reaches(ada, id, ['settled', 'broken']);
     expect(await pool.certificate(id)).toBe(rightCertificate(document));
-    expect(await nodes()).toBe(30_000);
+    expect(await nodes()).toBe(20_000);
   });
 
   it('extends a spent budget, and it goes on to the same certificate', async () => {
-    const { id, document } = await pool.ask(ada, 30_000, 'spin 10000', 500);
+    const { id, document } = await pool.ask(ada, 20_000, 'spin 10000', 500);
     const spent = await pool.reaches(ada, id, ['spent', 'settled', 'broken']);
     expect(spent).toMatchObject({ state: 'spent', verdict: 'open', certificate: null });
     expect(spent.reason).toContain('budget');
@@ -128,7 +149,7 @@ describe('its owner', () => {
     await pool.reaches(ada, id, ['settled', 'broken']);
     expect(await pool.certificate(id)).toBe(rightCertificate(document));
     const listing = (await pool.parcels(id)).filter((p) => p.phase === 'listing');
-    expect(listing.reduce((sum, p) => sum + Number(p.nodes), 0)).toBe(30_000);
+    expect(listing.reduce((sum, p) => sum + Number(p.nodes), 0)).toBe(20_000);
   });
 });
 
@@ -149,7 +170,7 @@ describe('a station', () => {
   });
 
   it('leaves nothing leased when it is told to stop, and counts no crash', async () => {
-    const { id, document } = await pool.ask(ada, 30_000, 'spin 20000');
+    const { id, document } = await pool.ask(ada, 15_000, 'spin 20000');
     await until('it runs', async () => (await pool.parcels(id)).some((p) => Number(p.nodes) > 0));
     station.signal('SIGTERM');
     expect(await station.gone()).toBe(0);

@@ -9,7 +9,7 @@ const LONGEST_WAIT_MS = 5_000;
 
 /** SQLSTATE classes and codes that mean "not now": connection, shutdown, start-up, too many, deadlock. */
 const SQLSTATES_OF_AN_OUTAGE = /^(08...|57P0[1-5]|53...|40001|40P01)$/;
-const SOCKET_CODES = new Set(['ECONNREFUSED', 'ECONNRESET', 'EPIPE', 'ETIMEDOUT', 'ENOTFOUND', 'EAI_AGAIN', 'ENOENT']);
+const SOCKET_CODES = new Set(['ECONNREFUSED', 'ECONNRESET', 'EPIPE', 'ETIMEDOUT', 'ENOTFOUND', 'EAI_AGAIN']);
 /** The driver says these without a code. */
 const DRIVER_WORDS =
   /connection terminated|client has encountered a connection error|timeout exceeded when trying to connect|client was closed|not queryable|connection is not established/i;
@@ -17,8 +17,9 @@ const DRIVER_WORDS =
 /** Whether an error only says that the database cannot be reached now. */
 export function isOutage(error: unknown): boolean {
   for (let at = error, depth = 0; at instanceof Object && depth < 8; depth += 1) {
-    const { code, message, driverError, cause, errors } = at as Record<string, unknown>;
+    const { code, syscall, message, driverError, cause, errors } = at as Record<string, unknown>;
     if (typeof code === 'string' && (SQLSTATES_OF_AN_OUTAGE.test(code) || SOCKET_CODES.has(code))) return true;
+    if (code === 'ENOENT' && syscall === 'connect') return true; // a socket file that is not there yet
     if (typeof message === 'string' && DRIVER_WORDS.test(message)) return true;
     if (Array.isArray(errors) && errors.some(isOutage)) return true;
     at = driverError instanceof Object && driverError !== at ? driverError : cause;

@@ -43,9 +43,7 @@ export class Station {
 
   async start(): Promise<void> {
     const { config, work, patience, log } = this.desk;
-    await patience.untilAnswered('the registration', () =>
-      work.registerStation({ id: this.id, name: config.name, version: VERSION, workers: config.workers }),
-    );
+    await patience.untilAnswered('the registration', () => this.register());
     this.stopListening = await patience.untilAnswered('the nudges', () =>
       work.onNudge(() => {
         this.heartbeat.soon();
@@ -75,6 +73,11 @@ export class Station {
       .catch((error: unknown) => this.desk.log.warn({ fault: String(error) }, 'left without a goodbye'));
     clearTimeout(patienceEnds);
     this.desk.log.info({ station: this.id }, 'stopped');
+  }
+
+  private register(): Promise<void> {
+    const { name, workers } = this.desk.config;
+    return this.desk.work.registerStation({ id: this.id, name, version: VERSION, workers });
   }
 
   private async claimLoop(): Promise<void> {
@@ -125,6 +128,8 @@ export class Station {
     const leases = [...this.held.keys()].map(({ lease: { parcelId, attempt } }) => ({ parcelId, attempt }));
     const report = { busy: this.held.size, memoryBytes: process.memoryUsage().rss, leases };
     const { standBy, advice } = await this.desk.work.heartbeat(this.id, report);
+    // also said to a station that was silent so long that it was forgotten: such a one comes back like this
+    if (standBy && !this.standBy) await this.register();
     this.follow(standBy, advice);
     if (this.held.size === this.desk.config.workers) await this.lookElsewhere();
     this.cutIfIdle();

@@ -23,11 +23,16 @@ export class WriteSpool {
     private readonly log: Log,
   ) {}
 
+  /** A disk that does not take it is said and borne: the result is still in memory. */
   keep(unwritten: Unwritten): void {
-    mkdirSync(this.folder, { recursive: true });
     const file = this.fileOf(unwritten.lease);
-    writeFileSync(`${file}.part`, serialize(unwritten));
-    renameSync(`${file}.part`, file);
+    try {
+      mkdirSync(this.folder, { recursive: true });
+      writeFileSync(`${file}.part`, serialize(unwritten));
+      renameSync(`${file}.part`, file);
+    } catch (error) {
+      this.log.error({ file, fault: String(error) }, 'a result cannot be kept on disk');
+    }
   }
 
   drop(lease: Lease): void {
