@@ -22,3 +22,6 @@ export { drawingToSvg, pathData, type SvgOptions } from './svg.ts';
 export { drawingToTikz, type TikzOptions } from './tikz.ts';
 export { trellisOnPaper, type Fit } from './paper.ts';
 export { matrixToLatex } from './latex-matrix.ts';
+export { layTree, type TreeInput, type TreeOptions, type TreePicture, type TreeSizeName } from './tree.ts';
+export { placeGraph, type Places } from './tree-places.ts';
+export { arrangedMatrix, type ArrangedMatrix } from './arranged-matrix.ts';

@@ -31,6 +31,9 @@ export interface Reading {
   readonly caption: string;
 }
 
+/** Names that one sentence holds; more are counted. */
+const NAMED = 8;
+
 export function readAim(trellis: Trellis, aim: Aim): Reading {
   switch (aim.kind) {
     case 'wire':
@@ -52,15 +55,17 @@ export function edgeBetween(trellis: Trellis, a: number, b: number): number {
 
 function readWire(trellis: Trellis, no: number): Reading {
   const wire = trellis.wires[no]!;
-  const meets = wire.entries.map(({ place }) => trellis.vertices[place]!.name);
-  const values = wire.entries.map(({ value }) => signed(value));
+  const { entries } = wire;
+  const few = entries.length <= NAMED;
+  const meets = few ? list(entries.map(({ place }) => trellis.vertices[place]!.name)) : `${entries.length} vertices`;
+  const values = entries.slice(0, NAMED).map(({ value }) => signed(value));
   return {
     wires: new Set([no]),
     vertices: new Set(wire.entries.map(({ place }) => place)),
     edge: -1,
     terms: [],
     sum: null,
-    caption: `${wireName(wire)} ${wire.columns.length === 1 ? 'meets' : 'meet'} ${list(meets)}: ${values.join(', ')}.`,
+    caption: `${wireName(wire)} ${wire.columns.length === 1 ? 'meets' : 'meet'} ${meets}: ${values.join(', ')}${few ? '' : ', …'}.`,
   };
 }
 
@@ -106,7 +111,7 @@ function pairCaption(
 
 /** “1 + 1 − 1 = 1”, or the number itself where there is one term. */
 function sumInWords(terms: readonly Term[], sum: bigint): string {
-  if (terms.length === 1) return numeral(sum).text;
+  if (terms.length === 1 || terms.length > NAMED) return numeral(sum).text;
   const added = terms.map(({ value }, i) =>
     i === 0 ? numeral(value).text : value < 0n ? ` − ${numeral(-value).text}` : ` + ${numeral(value).text}`,
   );
@@ -114,13 +119,14 @@ function sumInWords(terms: readonly Term[], sum: bigint): string {
 }
 
 function wireList(trellis: Trellis, terms: readonly Term[]): string {
+  if (terms.length > NAMED) return `${terms.length} wires`;
   return list(terms.map(({ wire }) => wireName(trellis.wires[wire]!)));
 }
 
 /** e_6, e_{12}, e_{2…6}. */
-function wireName({ first, last }: TrellisWire): string {
-  if (first !== last) return `e_{${first}…${last}}`;
-  return first < 10 ? `e_${first}` : `e_{${first}}`;
+function wireName({ label }: TrellisWire): string {
+  const number = label[1]!.text;
+  return number.length === 1 ? `e_${number}` : `e_{${number}}`;
 }
 
 function list(items: readonly string[]): string {

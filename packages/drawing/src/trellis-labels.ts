@@ -2,9 +2,10 @@
 import type { TextRun } from './marks.ts';
 import type { Wire } from './order-wires.ts';
 
-/** e_1, or e_{2…6} for equal wires that hang as one line. */
-export function wireLabel({ first, last }: Pick<Wire, 'first' | 'last'>): readonly TextRun[] {
-  return [{ text: 'e' }, { text: first === last ? `${first}` : `${first}…${last}`, level: 'low' }];
+/** e_1, or e_{2…6} for equal wires that hang as one line. @param numbers of the columns, where they come from elsewhere */
+export function wireLabel({ first, last, columns }: Wire, numbers?: readonly number[]): readonly TextRun[] {
+  const [from, to] = numbers === undefined ? [first, last] : [numbers[columns[0]!]!, numbers[columns.at(-1)!]!];
+  return [{ text: 'e' }, { text: from === to ? `${from}` : `${from}…${to}`, level: 'low' }];
 }
 
 export function radicalLabel(count: number, folded: boolean): readonly TextRun[] {

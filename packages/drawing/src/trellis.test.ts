@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { arrangedMatrix } from './arranged-matrix.ts';
 import { fruitSize } from './fruit.ts';
 import { layTrellis, linesOf, type Trellis, type TrellisInput } from './trellis.ts';
 import { SIZES, sizeFor } from './sizes.ts';
@@ -164,6 +165,23 @@ describe('the trellis of P(3, 5, −7) in Z^9', () => {
     ]);
     expect(kept.wires[4]!.entries[0]!.value).toBe(1n);
     expect(kept.wires[5]!.entries.map((e) => e.value)).toEqual([1n, -1n, -1n]);
+  });
+});
+
+describe('the matrix beside it', () => {
+  it('has the rows and columns of the drawing', () => {
+    const { rows, rowNames, columnNames } = arrangedMatrix(layTrellis(PRETZEL));
+    expect(rowNames[4]).toBe('c');
+    expect(rows[5]!.map(Number)).toEqual([0, 0, 0, 0, 0, -1, 1, 1, 2]);
+    expect(columnNames).toHaveLength(9);
+    const bundled = arrangedMatrix(layTrellis(BUNDLED));
+    expect(bundled.rows.map((row) => row.map(Number))).toEqual(BUNDLED.matrix);
+    expect(bundled.columnNames).toEqual(['e_{1}', 'e_{2}', 'e_{3}', 'e_{4}', 'e_{5}', 'e_{6}', 'e_{7}']);
+  });
+
+  it('can keep numbers that its columns have elsewhere', () => {
+    const part = layTrellis({ ...BUNDLED, columnNumbers: [4, 10, 11, 12, 13, 14, 30] });
+    expect(texts(part)).toEqual(expect.arrayContaining(['e4', 'e10…14', 'e30']));
   });
 });
 

@@ -20,6 +20,8 @@ export interface TrellisInput {
   /** As typed. */
   readonly weights: readonly DrawnInteger[];
   readonly edges: readonly GraphEdge[];
+  /** Numbers that the columns have elsewhere; left out, the wires are counted as they hang. */
+  readonly columnNumbers?: readonly number[];
   /** A basis of the radical: coefficients in the order of the rows. */
   readonly radical?: readonly (readonly DrawnInteger[])[];
 }
@@ -119,7 +121,7 @@ export function layTrellis(input: TrellisInput, options: TrellisOptions = {}): T
   const radical = folded ? [] : (input.radical ?? []).map((vector) => order.map((row) => numeral(vector[row]!)));
   const px = pitch(size, shown, wires, radical, labelled);
 
-  const labels = wires.map(wireLabel);
+  const labels = wires.map((wire) => wireLabel(wire, input.columnNumbers));
   const labelWidth = labelled
     ? Math.max(
         0,
