@@ -44,7 +44,7 @@ describe('two stations that race', () => {
       }
     })();
     const worker = async (at: Store, station: string, seed: number) => {
-      for (let i = 0; i < 10; i += 1) {
+      for (let i = 0; i < 5; i += 1) {
         const leases: Lease[] = [];
         for (let tries = 0; tries < 3; tries += 1) {
           const lease = await f.claim(station, at);
@@ -59,7 +59,7 @@ describe('two stations that race', () => {
         }
       }
     };
-    await Promise.all(Array.from({ length: 12 }, (_, i) => worker(stores[i % 2]!, stations[i % 2]!, i)));
+    await Promise.all(Array.from({ length: 8 }, (_, i) => worker(stores[i % 2]!, stations[i % 2]!, i)));
     racing = false;
     await sampler;
     expect(over).toEqual([]);
@@ -77,7 +77,7 @@ describe('two stations that race', () => {
     const person = await f.person('Once', { workers: 8, cpuSecondsPerDay: 100_000 });
     const studyId = await f.study(person);
     const station = await f.station(8);
-    for (let round = 0; round < 20; round += 1) {
+    for (let round = 0; round < 10; round += 1) {
       const id = await f.ask(person, studyId);
       await plan(store, (await f.claim(station))!, 6);
       const leases: Lease[] = [];
@@ -112,7 +112,7 @@ describe('two stations that race', () => {
     const studyId = await f.study(person);
     const station = await f.station(8);
     const endings = new Map<string, number>();
-    for (let round = 0; round < 60; round += 1) {
+    for (let round = 0; round < 40; round += 1) {
       const id = await f.ask(person, studyId);
       const lease = (await f.claim(station))!;
       const results = await Promise.allSettled(

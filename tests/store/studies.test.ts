@@ -33,7 +33,13 @@ describe('a study', () => {
     expect((await store.questions.view(mei.id, questionId))!.mine).toBe(false);
     await expect(store.questions.withdraw(mei, questionId)).rejects.toMatchObject({ code: 'forbidden' });
     await expect(f.ask(mei, id)).rejects.toMatchObject({ code: 'forbidden' });
+    const station = await f.station();
+    const lease = (await f.claim(station))!;
     await store.studies.bin(ines, id);
+    const beat = await store.work.heartbeat(station, { busy: 1, memoryBytes: 1, leases: [lease] });
+    expect(beat.advice.get(lease.parcelId)).toBe('yield'); // nothing of a binned study runs
+    await store.work.release(lease);
+    expect(await f.claim(station)).toBeNull();
     expect(await store.studies.get(ines.id, id)).toBeNull();
     expect(await store.questions.view(ines.id, questionId)).toBeNull();
   });

@@ -29,6 +29,10 @@ export interface DatabaseOptions {
 
 const POOL_SIZE = 10;
 const CONNECT_MS = 10_000;
+/** A process that froze inside a transaction loses it, and with it the locks for which everybody else waits. */
+const IDLE_MS = 10_000;
+/** A heartbeat that takes longer is none. */
+const BEAT_MS = 10_000;
 /** Short enough that ours and the queue's, `<schema>_queue`, fit the queue's own limit of 50. */
 const SCHEMA_NAME = /^[a-z][a-z0-9_]{0,39}$/;
 
@@ -50,7 +54,7 @@ export function connectionOptions({ databaseUrl, schema, applicationName }: Data
   return {
     connectionString: databaseUrl,
     application_name: applicationName,
-    options: `-c search_path=${schema} -c TimeZone=UTC`,
+    options: `-c search_path=${schema} -c TimeZone=UTC -c idle_in_transaction_session_timeout=${IDLE_MS}`,
     connectionTimeoutMillis: CONNECT_MS,
     keepAlive: true,
   };
@@ -79,7 +83,7 @@ export class Database implements Sql {
       extra: { ...connectionOptions(options), max: POOL_SIZE },
     });
     await source.initialize();
-    const beats = new Pool({ ...connectionOptions(options), max: 1 });
+    const beats = new Pool({ ...connectionOptions(options), max: 1, query_timeout: BEAT_MS });
     beats.on('error', options.onError);
     return new Database(source, options, beats);
   }

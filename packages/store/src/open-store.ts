@@ -32,7 +32,7 @@ export async function openStore(options: StoreOptions): Promise<Store> {
   const { poolTimeZone, defaultAllowance, onError } = options;
   return {
     people: openPeople({ database, nudges, defaultAllowance, poolTimeZone }),
-    studies: openStudies(database),
+    studies: openStudies(database, nudges),
     questions: openQuestions({ database, nudges, poolTimeZone }),
     pool: openPool({ database, nudges, poolTimeZone, queue }),
     work: openWork({ database, nudges, poolTimeZone, onError }),

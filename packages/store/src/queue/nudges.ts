@@ -24,6 +24,12 @@ export class Nudges {
     await this.notify(tx);
   }
 
+  /** There is old work: a nudge that still waits in the queue is enough. */
+  async again(tx: Sql): Promise<void> {
+    if ((await this.queue.waiting()) === 0) await this.queue.send(tx);
+    await this.notify(tx);
+  }
+
   /** There may be work or advice: heard by whoever listens now. */
   async notify(tx: Sql): Promise<void> {
     await tx.query('select pg_notify($1, $2)', [this.channel, '']);

@@ -4,9 +4,10 @@ import { Refusal, type Access, type Study } from '@palmette/contracts';
 import { audit } from '../audit.ts';
 import { pageOf, readCursor } from '../cursor.ts';
 import type { Database, Transaction } from '../database.ts';
-import type { StudiesStore } from '../door.ts';
+import type { Actor, StudiesStore } from '../door.ts';
 import { memberEntity, studyEntity } from '../entities/index.ts';
 import { isId } from '../people/person-row.ts';
+import type { Nudges } from '../queue/nudges.ts';
 import { studyNotes } from './notes.ts';
 import { touchStudy } from './touch-study.ts';
 
@@ -35,7 +36,7 @@ const SEEN = `
     from question q join search s on s.question_id = q.id where q.study_id = t.id) c
   where t.deleted_at is null`;
 
-export function openStudies(database: Database): StudiesStore {
+export function openStudies(database: Database, nudges: Nudges): StudiesStore {
   return {
     ...studyNotes(database),
 
@@ -84,6 +85,8 @@ export function openStudies(database: Database): StudiesStore {
 
     async bin(by, studyId) {
       await database.transaction(async (tx) => {
+        await holdSearches(tx, by, studyId);
+        await nudges.notify(tx);
         await tx.change('update study set deleted_at = now() where id = $1 and deleted_at is null', [studyId]);
         await audit(tx, by, 'bin study', studyId);
       });
@@ -125,6 +128,18 @@ export function openStudies(database: Database): StudiesStore {
       });
     },
   };
+}
+
+/** Nobody sees a binned study, so nothing of it runs. */
+async function holdSearches(tx: Transaction, by: Actor, studyId: string): Promise<void> {
+  const open = await tx.query<{ id: string }>(
+    `select s.id from search s join question q on q.id = s.question_id
+     where q.study_id = $1 and s.state in ('waiting', 'searching') order by s.id for no key update of s`,
+    [studyId],
+  );
+  const ids = open.map(({ id }) => id);
+  await tx.change(`update search set state = 'held', held_by = $2 where id = any($1)`, [ids, by.id]);
+  await tx.change(`update parcel set yield_wanted = true where search_id = any($1) and state = 'leased'`, [ids]);
 }
 
 /** Changes of members one at a time, so that two leads cannot remove each other. */

@@ -3,6 +3,7 @@
  * comes at a station that has other work, the station empties itself: its parcels yield and nothing else is begun.
  */
 import type { Transaction } from '../database.ts';
+import { lockSearchesOfLeases } from './claim-lock.ts';
 import { NOT_HEARD } from '../questions/place.ts';
 
 /** A station was emptied for this parcel. */
@@ -41,6 +42,7 @@ export async function reserveForAlone(tx: Transaction, stationId: string, search
   );
   if (parcel === undefined) return false;
   await tx.change('update station set alone_for = $2 where id = $1', [stationId, parcel.id]);
+  await lockSearchesOfLeases(tx, 'station', stationId);
   await tx.change(`update parcel set yield_wanted = true where station_id = $1 and state = 'leased'`, [stationId]);
   return true;
 }

@@ -20,7 +20,8 @@ export async function release({ database, nudges }: WorkContext, lease: Lease): 
       [lease.parcelId, lease.attempt],
     );
     if (released === 0) throw fencedOff(lease);
-    await tx.change('update search set had_quantum = true where id = $1 and not had_quantum', [search.id]);
+    if (lease.phase !== 'choosing')
+      await tx.change('update search set had_quantum = true where id = $1 and not had_quantum', [search.id]);
     await settleDown(tx, search.id);
     await changedState(tx, search.id);
     await nudges.notify(tx);

@@ -25,8 +25,8 @@ export async function registerStation({ database }: WorkContext, station: Statio
  */
 const HEARTBEAT = `
   with me as (
-    update station set heard_at = clock_timestamp(), busy = $2, memory_bytes = $3 where id = $1
-    returning stand_by),
+    update station set heard_at = clock_timestamp(), busy = $2, memory_bytes = $3
+    where id = (select id from station where id = $1 for no key update skip locked)),
   told as (select * from unnest($4::bigint[], $5::int[]) as t(parcel_id, attempt)),
   held as (
     select p.id from parcel p join told on told.parcel_id = p.id and told.attempt = p.attempt
@@ -40,7 +40,7 @@ const HEARTBEAT = `
       from parcel p ${YIELD_TABLES}
       where p.state = 'leased' and p.id in (select parcel_id from told)) l
     on l.id = told.parcel_id and l.attempt = told.attempt)
-  select coalesce((select stand_by from me), true) or (select count(*) from migration) > $7 as stand_by,
+  select coalesce((select stand_by from station where id = $1), true) or (select count(*) from migration) > $7 as stand_by,
     coalesce((select json_object_agg(parcel_id, advice) from advice), '{}') as advice`.replaceAll('$zone', '$6');
 
 export async function heartbeat(

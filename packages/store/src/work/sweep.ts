@@ -29,7 +29,7 @@ const GONE = `not exists (select 1 from station t where t.id = p.station_id
   and (t.stopped_at is not null or greatest(t.heard_at, pg_postmaster_start_time()) >= clock_timestamp() - $1 * interval '1 second'))`;
 /** Rows of stations that are long gone; keys of idempotency that nobody will send again. */
 const TIDY = [
-  `delete from station t where coalesce(t.stopped_at, t.heard_at) < now() - interval '1 day'
+  `delete from station t where (t.stopped_at < now() - interval '1 day' or t.heard_at < now() - interval '30 days')
      and not exists (select 1 from parcel p where p.station_id = t.id and p.state = 'leased')`,
   `delete from idempotency where at < now() - interval '7 days'`,
   `delete from key_link where expires_at < now() - interval '30 days'`,
@@ -104,7 +104,7 @@ async function nudgeAgain({ database, nudges, poolTimeZone }: WorkContext): Prom
               where p.state = 'leased' and x.person_id = s.person_id) < a.workers`,
       [poolTimeZone],
     );
-    if (waiting!.n > 0) await nudges.work(tx);
+    if (waiting!.n > 0) await nudges.again(tx);
     return waiting!.n;
   });
 }
