@@ -55,6 +55,8 @@ describe('what a verdict may mean', () => {
   it('is silent where the form has a radical', () => {
     const facts = { ...pretzel, nullity: 1 };
     expect(consequences(facts).every((l) => l.outcome === 'open')).toBe(true);
+    // The link then has determinant 0, and a knot has not, whatever the determinant of the reduced lattice.
+    expect(line(facts, 'slice')).toBeUndefined();
   });
 
   it('never speaks of a slice knot where the determinant is even, nor of any link where a matrix was entered', () => {

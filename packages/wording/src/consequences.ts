@@ -67,8 +67,7 @@ export function excludedAtRank(facts: ConsequenceFacts): boolean {
 export function consequences(facts: ConsequenceFacts): readonly Consequence[] {
   if (facts.verdict === 'open') return [];
   const lines = [rationalBall(facts)];
-  if (LINK_SOURCES.includes(facts.sourceKind))
-    lines.push(isOdd(facts.determinant) ? sliceKnot(facts) : chiSliceLink(facts));
+  if (LINK_SOURCES.includes(facts.sourceKind)) lines.push(isKnot(facts) ? sliceKnot(facts) : chiSliceLink(facts));
   return lines;
 }
 
@@ -139,7 +138,7 @@ function open(id: string, property: string, sentence: string): Consequence {
   return { id, property, outcome: 'open', boxes: [], theorem: '', sentence };
 }
 
-/** The determinant of a knot is odd, that of a link of several components even. */
-function isOdd(decimal: string): boolean {
-  return '13579'.includes(decimal.at(-1) ?? '0');
+/** The determinant of a knot is odd, that of a link of several components even; with a radical it is 0. */
+function isKnot(facts: ConsequenceFacts): boolean {
+  return facts.nullity === 0 && '13579'.includes(facts.determinant.at(-1) ?? '0');
 }

@@ -27,8 +27,13 @@ export const putMember = (id: string, email: string, access: Access) =>
 export const removeMember = (id: string, personId: string) =>
   request<void>('DELETE', `${at(id)}/members/${encodeURIComponent(personId)}`);
 
-export const listNotes = (id: string, page: PageOptions = {}) =>
-  request<Page<Note>>('GET', `${at(id)}/notes${pageOf(page)}`, withSignal(page.signal));
+/** Notes of a study, or with `questionId` those on one question of it. */
+export const listNotes = (id: string, page: PageOptions & { readonly questionId?: string | undefined } = {}) =>
+  request<Page<Note>>(
+    'GET',
+    `${at(id)}/notes${query({ after: page.after, limit: page.limit, questionId: page.questionId })}`,
+    withSignal(page.signal),
+  );
 export const makeNote = (id: string, text: string, questionId?: string) =>
   request<Note>('POST', `${at(id)}/notes`, { body: { text, ...(questionId === undefined ? {} : { questionId }) } });
 
