@@ -1,6 +1,6 @@
 export * from './marks.ts';
-export { numeral, signed, type DrawnInteger, type Numeral } from './numerals.ts';
-export { type Graph, type GraphEdge } from './graph.ts';
+export { isZero, numeral, signed, type DrawnInteger, type Numeral } from './numerals.ts';
+export type { Graph, GraphEdge } from './graph.ts';
 export { vertexOrder } from './order-vertices.ts';
 export { BUNDLE_FROM, hangWires, type Wire, type WireEntry, type Wires } from './order-wires.ts';
 export { sizeFor, SIZES, type Size, type SizeName } from './sizes.ts';
