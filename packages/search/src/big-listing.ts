@@ -2,7 +2,7 @@
  * The children of one node when norms are too big for exact doubles: the same rule and the same order as `listing.ts`,
  * in bigint, plainly. Slow and right: huge entries may take long, they must not be answered wrongly.
  */
-import { integerSqrt } from '@palmette/exact';
+import { floorDivide, integerSqrt } from '@palmette/exact';
 import type { FoundOrbit } from './found.ts';
 import { LISTED, type Listed } from './listing.ts';
 
@@ -31,7 +31,7 @@ export class BigListing {
   /** Class of each slot in filling order. */
   private slotClass: number[] = [];
   private filled: Slot[] = [];
-  private state: 'fresh' | 'back' = 'fresh';
+  private state: 'fresh' | 'try' | 'back' = 'fresh';
 
   reset(zeros: number): void {
     this.classes = [];
@@ -57,11 +57,13 @@ export class BigListing {
         if (this.rest === 0n) {
           this.state = 'back';
           if (this.canEndHere()) return LISTED.found;
-          continue;
-        }
-        if (!this.open()) this.state = 'back';
-      } else if (!this.stepBack()) return LISTED.done;
-      this.advanceTop();
+        } else this.state = this.open() ? 'try' : 'back';
+      } else if (this.state === 'back') {
+        const top = this.filled.at(-1);
+        if (top === undefined) return LISTED.done;
+        this.apply(top, -1n);
+        this.state = 'try';
+      } else this.tryNext();
     }
   }
 
@@ -75,50 +77,49 @@ export class BigListing {
   private open(): boolean {
     const at = this.filled.length;
     const top = this.filled.at(-1);
-    let high = integerSqrt(this.rest);
+    const root = integerSqrt(this.rest);
     if (at < this.slotClass.length) {
       const c = this.slotClass[at]!;
-      const low = -high;
-      if (top !== undefined && top.c === c && top.value < high) high = top.value;
-      this.filled.push({ c, value: high + 1n, low });
+      const high = top !== undefined && top.c === c && top.value < root ? top.value : root;
+      const range = this.narrow(c, -root, high);
+      this.filled.push({ c, value: range.high + 1n, low: range.low });
       return true;
     }
-    const used = at - this.slotClass.length;
-    const left = BigInt(this.zeros - used);
+    const left = BigInt(this.zeros - (at - this.slotClass.length));
     if (left <= 0n || this.b.some((x) => x !== 0n)) return false;
-    if (top !== undefined && top.c < 0 && top.value < high) high = top.value;
-    if (high * high * left < this.rest) return false;
+    const high = top !== undefined && top.c < 0 && top.value < root ? top.value : root;
     // the largest of at most `left` squares is at least rest / left
     this.filled.push({ c: -1, value: high + 1n, low: ceilSqrt((this.rest + left - 1n) / left) });
     return true;
   }
 
-  private stepBack(): boolean {
-    const top = this.filled.at(-1);
-    if (top === undefined) return false;
-    this.apply(top, -1n);
-    return true;
+  /** Cauchy–Schwarz as an interval of values (see `listing.ts`), rounded outwards. */
+  private narrow(c: number, low: bigint, high: bigint): { low: bigint; high: bigint } {
+    let range = { low, high };
+    for (const [i, p] of this.classes[c]!.entries) {
+      const whole = this.s[i]!;
+      const inside = this.rest * whole - this.b[i]! * this.b[i]!;
+      if (inside < 0n) return { low: 1n, high: 0n };
+      const spread = integerSqrt((whole - p * p) * inside) + 1n;
+      const top = floorDivide(this.b[i]! * p + spread, whole);
+      const bottom = -floorDivide(spread - this.b[i]! * p, whole);
+      range = { low: bottom > range.low ? bottom : range.low, high: top < range.high ? top : range.high };
+    }
+    return range;
   }
 
-  /** Tries smaller values of the top slot until one may stand; drops the slot if none does. */
-  private advanceTop(): void {
-    if (this.state === 'back' && this.filled.length === 0) return;
-    const top = this.filled.at(-1);
-    if (top === undefined) return;
-    for (;;) {
-      top.value -= 1n;
-      if (top.value < top.low) {
-        this.filled.pop();
-        this.state = 'back';
-        return;
-      }
-      this.apply(top, 1n);
-      if (this.mayStand(top)) {
-        this.state = 'fresh';
-        return;
-      }
-      this.apply(top, -1n);
+  /** Tries the next smaller value of the top slot; drops the slot if there is none. */
+  private tryNext(): void {
+    const top = this.filled.at(-1)!;
+    top.value -= 1n;
+    if (top.value < top.low) {
+      this.filled.pop();
+      this.state = 'back';
+      return;
     }
+    this.apply(top, 1n);
+    if (this.mayStand(top)) this.state = 'fresh';
+    else this.apply(top, -1n);
   }
 
   private apply(slot: Slot, sign: bigint): void {

@@ -20,6 +20,8 @@ export interface SearchQuestion {
 
 /** LLL is tried up to this rank. */
 const LLL_RANK = 60;
+/** A basis whose trace is this many times that of the reduced one is not probed. */
+const MUCH_LONGER = 4n;
 const PROBES = 24;
 const PROBE_STEPS = 60_000;
 
@@ -72,5 +74,6 @@ function forms(gram: ReadonlyBigMatrix): { gram: ReadonlyBigMatrix; change: Redu
   const reduction = lllGram(gram);
   const trace = (m: ReadonlyBigMatrix) => m.reduce((sum, row, i) => sum + row[i]!, 0n);
   if (isIdentity(reduction.change) || trace(reduction.gram) >= trace(gram)) return [plain];
-  return [plain, { gram: reduction.gram, change: reduction, words: 'after LLL, ' }];
+  const reduced = { gram: reduction.gram, change: reduction, words: 'after LLL, ' };
+  return trace(gram) > MUCH_LONGER * trace(reduction.gram) ? [reduced] : [plain, reduced];
 }

@@ -31,7 +31,7 @@ export function cover(plan: Plan, stage: Stage, parcels: number): CoverPiece[] {
   const form = workingForm(plan);
   let branches: Branch[] = [{ address: [], share: 1 }];
   const closed = new Set<Branch>();
-  for (let steps = 0; branches.length < parcels && steps < COVER_STEPS; ) {
+  for (let steps = 0; branches.length < parcels && steps < COVER_STEPS;) {
     const open = branches.filter((b) => b.address.length < form.rank && !closed.has(b));
     if (open.length === 0) break;
     const largest = open.reduce((a, b) => (b.share > a.share ? b : a));
@@ -41,11 +41,20 @@ export function cover(plan: Plan, stage: Stage, parcels: number): CoverPiece[] {
     else branches = branches.flatMap((b) => (b === largest ? children.branches : [b]));
   }
   branches.sort((a, b) => compareAddresses(a.address, b.address));
-  return branches.map((b, i) => ({ from: i === 0 ? [] : b.address, to: branches[i + 1]?.address ?? null, share: b.share }));
+  return branches.map((b, i) => ({
+    from: i === 0 ? [] : b.address,
+    to: branches[i + 1]?.address ?? null,
+    share: b.share,
+  }));
 }
 
 /** At most `most` runs of siblings. */
-function childBranches(form: WorkingForm, dimension: number, parent: Branch, most: number): { branches: Branch[]; steps: number } {
+function childBranches(
+  form: WorkingForm,
+  dimension: number,
+  parent: Branch,
+  most: number,
+): { branches: Branch[]; steps: number } {
   const ladder = openLadder(form, dimension);
   parent.address.forEach((child, depth) => {
     ladder.begin(depth);
@@ -56,7 +65,8 @@ function childBranches(form: WorkingForm, dimension: number, parent: Branch, mos
   ladder.begin(depth);
   const last = ladder.steps + COUNT_STEPS;
   let count = 0;
-  while (count < COUNTED_CHILDREN && ladder.steps < last && ladder.next(depth, last - ladder.steps) === LISTED.found) count += 1;
+  while (count < COUNTED_CHILDREN && ladder.steps < last && ladder.next(depth, last - ladder.steps) === LISTED.found)
+    count += 1;
   const stride = Math.max(1, Math.ceil(count / most));
   const branches = Array.from({ length: Math.ceil(count / stride) }, (_, i) => ({
     address: [...parent.address, i * stride],
