@@ -68,10 +68,11 @@ function withKept(trellis: Trellis, kept: Aim | null, over: Aim): Aim {
 
 function pairOf(trellis: Trellis, a: number, b: number): Aim {
   const edge = edgeBetween(trellis, a, b);
-  return edge >= 0 ? { kind: 'edge', edge } : { kind: 'pair', vertices: [a, b] };
+  return edge >= 0 ? { kind: 'edge', edge, vertex: b } : { kind: 'pair', vertices: [a, b] };
 }
 
 function same(a: Aim, b: Aim | null): boolean {
+  if (a.kind === 'edge' && b?.kind === 'edge') return a.edge === b.edge;
   return JSON.stringify(a) === JSON.stringify(b);
 }
 
@@ -93,17 +94,17 @@ function vertexOf(trellis: Trellis, aim: Aim): number {
     case 'pair':
       return aim.vertices[1];
     case 'edge':
-      return trellis.edges[aim.edge]!.to;
+      return aim.vertex ?? trellis.edges[aim.edge]!.to;
     case 'wire':
       return trellis.wires[aim.wire]!.entries[0]!.place;
   }
 }
 
-/** The edges of a vertex in turn; at an edge, the next one of its left vertex. */
+/** The edges of a vertex in turn; at an edge, the next one of the vertex from which it was reached. */
 function nextEdge(trellis: Trellis, pointer: Pointer, aim: Aim): Pointer {
-  const vertex = aim.kind === 'edge' ? trellis.edges[aim.edge]!.from : vertexOf(trellis, aim);
+  const vertex = vertexOf(trellis, aim);
   const own = trellis.edges.flatMap(({ from, to }, edge) => (from === vertex || to === vertex ? [edge] : []));
   if (own.length === 0) return pointer;
   const at = aim.kind === 'edge' ? own.indexOf(aim.edge) : -1;
-  return { ...pointer, aim: { kind: 'edge', edge: own[(at + 1) % own.length]! } };
+  return { ...pointer, aim: { kind: 'edge', edge: own[(at + 1) % own.length]!, vertex } };
 }

@@ -101,12 +101,16 @@ describe('going about by keys', () => {
   });
 
   it('takes the edges of a vertex in turn', () => {
-    expect(go('ArrowRight', 'ArrowRight', 'e').aim).toEqual({ kind: 'edge', edge: 0 });
-    expect(go('ArrowRight', 'e', 'e').aim).toEqual({ kind: 'edge', edge: 0 });
+    const middle = ['ArrowRight', 'ArrowRight', 'e'];
+    expect(go(...middle).aim).toMatchObject({ kind: 'edge', edge: 0 });
+    expect(go(...middle, 'e').aim).toMatchObject({ kind: 'edge', edge: 1 });
+    expect(go(...middle, 'e', 'e').aim).toMatchObject({ kind: 'edge', edge: 0 });
+    expect(go(...middle, 'ArrowRight').aim).toEqual({ kind: 'vertex', vertex: 2 });
+    expect(go('ArrowRight', 'e', 'e').aim).toMatchObject({ kind: 'edge', edge: 0 });
   });
 
   it('keeps on Enter, makes a pair of the kept vertex and the next, lets go on Esc', () => {
-    expect(go('ArrowRight', 'Enter', 'ArrowRight').aim).toEqual({ kind: 'edge', edge: 0 });
+    expect(go('ArrowRight', 'Enter', 'ArrowRight').aim).toMatchObject({ kind: 'edge', edge: 0 });
     expect(go('ArrowRight', 'Enter', 'ArrowRight', 'ArrowRight').aim).toEqual({ kind: 'pair', vertices: [0, 2] });
     expect(go('ArrowRight', 'Enter', 'ArrowRight', 'Escape')).toEqual(AT_REST);
     expect(afterKey(trellis, AT_REST, 'Escape')).toBeNull();

@@ -10,7 +10,8 @@ import type { Trellis, TrellisWire } from './trellis.ts';
 export type Aim =
   | { readonly kind: 'vertex'; readonly vertex: number }
   | { readonly kind: 'wire'; readonly wire: number }
-  | { readonly kind: 'edge'; readonly edge: number }
+  /** `vertex`: the end from which the edge was reached. */
+  | { readonly kind: 'edge'; readonly edge: number; readonly vertex?: number }
   | { readonly kind: 'pair'; readonly vertices: readonly [number, number] };
 
 export interface Term {
