@@ -59,24 +59,44 @@ function memoryGone(facts: StateFacts): boolean {
 
 /** The line under that heading. */
 export function stateLead(facts: StateFacts): string {
+  const progress = progressSentence(facts);
+  const nothing = 'Nothing can be concluded.';
   switch (facts.state) {
     case 'searching':
       return searchingLead(facts);
     case 'waiting':
-      return `${waitingReason(facts)} Nothing can be concluded yet.`;
+      return together(waitingReason(facts), 'Nothing can be concluded yet.');
     case 'held':
-      return `Held${facts.heldBy === null ? '' : ` by ${facts.heldBy}`}. ${progressSentence(facts)} What was done is kept; it can go on from here. Nothing can be concluded.`;
+      return together(
+        facts.heldBy === null ? 'It is held.' : `Held by ${asSentence(facts.heldBy)}`,
+        progress,
+        'What was done is kept; it can go on from here.',
+        nothing,
+      );
     case 'spent':
       return memoryGone(facts)
-        ? `${asSentence(facts.reason!)} ${progressSentence(facts)} Nothing can be concluded.`
-        : `The search used ${facts.budgetCpuSeconds === null ? 'its budget' : `its ${spanInWords(facts.budgetCpuSeconds)} of CPU time`}. ${progressSentence(facts)} Nothing can be concluded. It can go on from here.`;
+        ? together(asSentence(facts.reason!), progress, nothing)
+        : together(
+            `The search used ${facts.budgetCpuSeconds === null ? 'its budget' : `its ${spanInWords(facts.budgetCpuSeconds)} of CPU time`}.`,
+            progress,
+            nothing,
+            'It can go on from here.',
+          );
     case 'withdrawn':
-      return `It was withdrawn before it was settled. ${progressSentence(facts)} Nothing can be concluded. What was found is kept.`;
+      return together('It was withdrawn before it was settled.', progress, nothing, 'What was found is kept.');
     case 'broken':
-      return `${asSentence(facts.reason ?? 'no reason was recorded')} This is a fault and no answer: no verdict is shown until it is explained. What was found is kept.`;
+      return together(
+        asSentence(facts.reason ?? 'no reason was recorded'),
+        'This is a fault and no answer: no verdict is shown until it is explained.',
+        'What was found is kept.',
+      );
     case 'settled':
       return '';
   }
+}
+
+function together(...sentences: readonly string[]): string {
+  return sentences.filter((sentence) => sentence !== '').join(' ');
 }
 
 function searchingLead(facts: StateFacts): string {

@@ -18,8 +18,10 @@ export function currentPath(): Readonly<ShallowRef<readonly PathPlace[]>> {
 /** Hangs a page's path on the wire and names the window after its last place. */
 export function usePagePath(places: MaybeRefOrGetter<readonly PathPlace[]>): void {
   watchEffect(() => {
-    path.value = toValue(places);
-    const here = path.value.at(-1)?.label.replaceAll(/\^\{?([^}\s]*)\}?/g, '^$1');
+    // Only written here, never read: two pages, one inside the other, would otherwise answer each other for ever.
+    const mine = toValue(places);
+    path.value = mine;
+    const here = mine.at(-1)?.label.replaceAll(/\^\{?([^}\s]*)\}?/g, '^$1');
     document.title = here === undefined ? 'Palmette' : `${here} · Palmette`;
   });
 }

@@ -1,0 +1,128 @@
+/**
+ * The quick look: arithmetic first, then a search that ends after 200 ms of listing or 10^5 nodes, whichever comes
+ * first. What it says is not certified and nothing of it is kept.
+ */
+import type { Target } from '@palmette/contracts';
+import { arithmeticGround, reducedBasis, type ArithmeticGround, type Lattice } from '@palmette/lattice';
+import {
+  choosePlan,
+  embeddingMatrix,
+  estimate,
+  nextStep,
+  openRun,
+  type Plan,
+  type StageResult,
+} from '@palmette/search';
+import type { ArithmeticReading, DimensionGround, PreviewOrder, QuickLook } from './preview-messages.ts';
+
+const LISTING_MS = 200;
+const LISTING_NODES = 100_000n;
+/** Nodes between two looks at the clock. */
+const SLICE = 500;
+/** Choosing a plan takes longer than a look beyond this rank. */
+const QUICK_RANK = 120;
+/** Probes of the estimate, and the listing steps that all of them may take. */
+const PROBES = 40;
+const PROBE_STEPS = 300_000;
+/** The same question gets the same plan; a look needs no more of its seed. */
+const SEED = 1;
+/** Above the rank by more than this, arithmetic has no condition (FORMAT.md, section 7). */
+const LAST_EXCESS = 2;
+
+export function arithmeticReading(lattice: Lattice, target: Target): ArithmeticReading {
+  const ground = (n: number) => arithmeticGround(lattice, n);
+  if ('any' in target) return { excluded: [], settled: false, next: null };
+  if (!('least' in target)) {
+    const n = 'dimension' in target ? target.dimension : lattice.rank + target.excess;
+    const found = ground(n);
+    return found === null
+      ? { excluded: [], settled: false, next: n }
+      : { excluded: [{ dimension: n, ground: found }], settled: true, next: null };
+  }
+  const upTo = target.least.upTo ?? Infinity;
+  const excluded: DimensionGround[] = [];
+  if (upTo < lattice.rank)
+    return { excluded: [{ dimension: upTo, ground: { ground: 'dimension' } }], settled: true, next: null };
+  for (let n = lattice.rank; n <= Math.min(upTo, lattice.rank + LAST_EXCESS); n += 1) {
+    const found = ground(n);
+    if (found === null) return { excluded, settled: false, next: n };
+    excluded.push({ dimension: n, ground: found });
+  }
+  const next = lattice.rank + LAST_EXCESS + 1;
+  return next <= upTo ? { excluded, settled: false, next } : { excluded, settled: true, next: null };
+}
+
+/** @param now milliseconds, for the bound of the listing */
+export function quickLook(lattice: Lattice, order: PreviewOrder, now: () => number): QuickLook {
+  if (lattice.rank > QUICK_RANK)
+    return { kind: 'none', why: `Rank ${lattice.rank} is too much for a quick look in the browser.` };
+  const reduced = reducedBasis(lattice);
+  const arithmetic = (n: number): ArithmeticGround | null => arithmeticGround(lattice, n);
+  const plan = choosePlan({ gram: reduced.gram, target: order.target, scope: order.scope, seed: SEED }, arithmetic);
+  const results: StageResult[] = [];
+  const began = now();
+  let first: { matrix: string[][]; zeroColumns: number } | null = null;
+  let nodes = 0n;
+  for (;;) {
+    const step = nextStep(plan, results, arithmetic);
+    if ('conclusion' in step) {
+      const { verdict, dimension, listComplete } = step.conclusion;
+      return {
+        kind: 'done',
+        verdict,
+        dimension,
+        complete: listComplete,
+        orbits: results.at(-1)?.orbits ?? '0',
+        nodes: nodes.toString(),
+        ms: now() - began,
+        first: verdict === 'embeds' ? first : null,
+      };
+    }
+    const { stage } = step;
+    const run = openRun(plan, stage, { from: [], to: null });
+    let state = run.advance(SLICE);
+    first = firstOf(plan, run.takeFound(), reduced.basis, first);
+    while (state === 'more' && now() - began < LISTING_MS && nodes + run.nodes < LISTING_NODES) {
+      state = run.advance(SLICE);
+      first = firstOf(plan, run.takeFound(), reduced.basis, first);
+    }
+    nodes += run.nodes;
+    if (state === 'more') {
+      const ms = now() - began;
+      return {
+        kind: 'unfinished',
+        dimension: stage.dimension,
+        orbits: run.orbits.toString(),
+        nodes: nodes.toString(),
+        ms,
+        seconds: secondsOf(plan, stage, nodes, ms),
+        first,
+      };
+    }
+    results.push({ ...stage, complete: state === 'done', nodes: run.nodes.toString(), orbits: run.orbits.toString() });
+    if (run.orbits === 0n) first = null;
+  }
+}
+
+type Step = Extract<ReturnType<typeof nextStep>, { readonly stage: unknown }>;
+
+/** The estimate of the tree at the rate that was just seen. */
+function secondsOf(plan: Plan, stage: Step['stage'], nodes: bigint, ms: number) {
+  const { mean, low, high } = estimate(plan, stage, { probes: PROBES, seed: SEED, steps: PROBE_STEPS });
+  const rate = (Number(nodes) / Math.max(1, ms)) * 1000;
+  if (!Number.isFinite(mean) || !Number.isFinite(high) || rate <= 0) return null;
+  const least = Math.max(low, Number(nodes));
+  return { low: least / rate, likely: Math.max(mean, least) / rate, high: Math.max(high, least) / rate };
+}
+
+function firstOf(
+  plan: Plan,
+  found: Parameters<typeof embeddingMatrix>[1][],
+  radical: Parameters<typeof embeddingMatrix>[2],
+  before: { matrix: string[][]; zeroColumns: number } | null,
+): { matrix: string[][]; zeroColumns: number } | null {
+  const [orbit] = found;
+  if (before !== null || orbit === undefined) return before;
+  const { rows, zeros } = embeddingMatrix(plan, orbit, radical);
+  return { matrix: rows.map((row) => row.map(String)), zeroColumns: zeros };
+}

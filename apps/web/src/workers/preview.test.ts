@@ -1,0 +1,96 @@
+import { describe, expect, it } from 'vitest';
+import { buildLattice, readSourceText } from '@palmette/lattice';
+import type { Source, Target } from '@palmette/contracts';
+import { arithmeticReading, quickLook } from './preview-quick.ts';
+import { readingOf } from './preview-reading.ts';
+
+const source = (text: string) => readSourceText(text) as Source;
+const look = (text: string, target: Target, scope: 'one' | 'all' = 'all') =>
+  quickLook(buildLattice(source(text)), { source: source(text), target, scope }, () => 0);
+
+describe('as read', () => {
+  const read = (text: string) => readingOf(source(text), buildLattice(source(text)));
+
+  it('tells rank, form and star of P(3, 5, −7)', () => {
+    const reading = read('P(3, 5, -7)');
+    expect(reading).toMatchObject({ rank: 8, determinant: '41', definiteness: 'negative definite' });
+    expect(reading.star).toBe('e_0 = −2; legs 3/2, 5/4, 7/1');
+    expect(reading.weights.join(' ')).toBe('-2 -2 -2 -2 -2 -2 -2 -7');
+    expect(reading.form![0]!.join(' ')).toBe('-2 1 0 1 0 0 0 1');
+    expect(reading.other).toEqual({
+      sentence: 'The mirror image gives an indefinite star, signature (1, 8): not offered.',
+    });
+  });
+
+  it('offers both chains of a fraction', () => {
+    const reading = read('17/5');
+    expect(reading.remarks[0]).toContain('[4, 2, 3]');
+    expect(reading.other?.sentence).toContain('[2, 2, 4, 2], rank 4');
+    expect(reading.other?.source).toMatchObject({ orientation: 'dual' });
+    expect(reading.star).toBeNull();
+  });
+
+  it('draws a sparse matrix as a graph, and no dense one', () => {
+    expect(read('[[2,-1],[-1,2]]').edges).toEqual([[0, 1, -1]]);
+    const dense = Array.from({ length: 9 }, (_, i) => Array.from({ length: 9 }, (_, j) => (i === j ? 20 : 1)));
+    expect(read(JSON.stringify(dense)).edges).toBeNull();
+  });
+});
+
+describe('arithmetic', () => {
+  const arithmetic = (text: string, target: Target) => arithmeticReading(buildLattice(source(text)), target);
+
+  it('settles 17/5 at its rank, and leaves Z^5 to a search', () => {
+    expect(arithmetic('17/5', { excess: 0 })).toEqual({
+      excluded: [{ dimension: 3, ground: { ground: 'determinant' } }],
+      settled: true,
+      next: null,
+    });
+    const least = arithmetic('17/5', { least: {} });
+    // MATHEMATICS.md 3: 17/5 in Z^4 fails at p = 2 and p = 17
+    expect(least.excluded[1]).toEqual({ dimension: 4, ground: { ground: 'hilbert', primes: ['2', '17'] } });
+    expect(least).toMatchObject({ settled: false, next: 5 });
+    expect(arithmetic('17/5', { least: { upTo: 4 } }).settled).toBe(true);
+    expect(arithmetic('17/5', { least: { upTo: 2 } }).excluded).toEqual([
+      { dimension: 2, ground: { ground: 'dimension' } },
+    ]);
+    expect(arithmetic('17/5', { any: true })).toMatchObject({ settled: false, next: null });
+  });
+});
+
+describe('the quick look', () => {
+  it('finds the only embedding of P(3, 5, −7), which multiplies back to its form', () => {
+    const quick = look('P(3, 5, -7)', { least: {} });
+    expect(quick).toMatchObject({ kind: 'done', verdict: 'embeds', dimension: 9, orbits: '1', complete: true });
+    const a = quick.kind === 'done' ? quick.first!.matrix.map((row) => row.map(Number)) : [];
+    const { gram } = buildLattice(source('P(3, 5, -7)'));
+    expect(a.map((r) => a.map((s) => BigInt(r.reduce((sum, x, k) => sum + x * s[k]!, 0))))).toEqual(gram);
+  });
+
+  it('excludes E6 from every Z^n', () => {
+    expect(look('E6', { any: true })).toMatchObject({
+      kind: 'done',
+      verdict: 'excluded',
+      dimension: null,
+      first: null,
+    });
+  });
+
+  it('stops at its bound and says how long the whole may take', () => {
+    let clock = 0;
+    const text = 'P(3, 5, -7)';
+    const lattice = buildLattice(source(text));
+    const quick = quickLook(
+      lattice,
+      { source: source(text), target: { dimension: 40 }, scope: 'all' },
+      () => (clock += 150),
+    );
+    if (quick.kind === 'unfinished') {
+      expect(quick.seconds!.low).toBeLessThanOrEqual(quick.seconds!.high);
+    } else expect(quick).toMatchObject({ kind: 'done', verdict: 'embeds' });
+  });
+
+  it('does not try what is too big', () => {
+    expect(look('[' + new Array(130).fill(2).join(',') + ']', { excess: 1 })).toMatchObject({ kind: 'none' });
+  });
+});
