@@ -7,11 +7,22 @@ import { testDatabase, type TestDatabase } from '../store/test-database.ts';
 import { keptLetters, startLocalMail, type LocalMail } from './local-mail.ts';
 import { startPool, until, type PoolUnderTest, type ToyStation } from './pool-under-test.ts';
 
-/** Three chains [5, 5] (24/5) into Z^10: some thousands of orbits, a few seconds of work. */
+/** A dense lattice of rank 7 into Z^8, made at random: few embeddings, thousands of nodes, some seconds of work. */
 const LONG = JSON.stringify({
   format: 'palmette.question/1',
-  source: { kind: 'sum', of: Array.from({ length: 3 }, () => ({ kind: 'fraction', p: 24, q: 5 })) },
-  target: { excess: 4 },
+  source: {
+    kind: 'matrix',
+    rows: [
+      [19, -5, 3, 2, 1, -8, 2],
+      [-5, 19, -1, -6, 1, 3, 2],
+      [3, -1, 16, 9, 3, -13, 8],
+      [2, -6, 9, 16, 11, -9, 0],
+      [1, 1, 3, 11, 16, -4, -5],
+      [-8, 3, -13, -9, -4, 20, -3],
+      [2, 2, 8, 0, -5, -3, 13],
+    ],
+  },
+  target: { excess: 1 },
   scope: 'all',
 });
 
@@ -47,7 +58,7 @@ function aloneAnswer(document: string): string {
 describe('a real search', () => {
   it('cut into parcels and killed in the middle ends in the same bytes as one run alone', async () => {
     const first = await start('killed');
-    const { id } = await pool.askDocument(ada, LONG, '3 × 24/5');
+    const { id } = await pool.askDocument(ada, LONG, 'matrix 7 × 7');
     await until('a parcel has a checkpoint', async () =>
       (await pool.parcels(id)).some((p) => p.state === 'leased' && Number(p.nodes) > 0),
     );
@@ -57,7 +68,7 @@ describe('a real search', () => {
 
     await start('heir');
     const seen = await pool.reaches(ada, id, ['settled', 'broken'], 120);
-    expect(seen).toMatchObject({ state: 'settled', verdict: 'embeds', ground: 'exhaustion', rank: 6, dimension: 10 });
+    expect(seen).toMatchObject({ state: 'settled', verdict: 'embeds', ground: 'exhaustion', rank: 7, dimension: 8 });
     const certificate = await pool.certificate(id);
     expect(certificate === aloneAnswer(LONG)).toBe(true);
     expect(check(Buffer.from(certificate))).toMatchObject({ verdict: 'VERIFIED', line: seen.certificate!.checkerLine });
@@ -69,7 +80,7 @@ describe('a real search', () => {
       const kept = await keptLetters(mail.folder);
       return kept.length > 0 && kept;
     });
-    expect(letters.map((l) => l.subject)).toEqual(['Embeds in Z^10: 3 × 24/5']);
+    expect(letters.map((l) => l.subject)).toEqual(['Embeds in Z^8: matrix 7 × 7']);
     expect(letters[0]!.text).toContain(`${seen.orbits} orbits, list complete. Ground: exhaustion; checked.`);
   });
 

@@ -6,8 +6,8 @@ import { inForest } from './forest.ts';
 import type { HeldParcel } from './held-parcel.ts';
 import { readBook, writeBook, type StageBook } from './stage-book.ts';
 
-/** Trees up to this many nodes are checked by the assembling thread itself: a second or two. */
-const WHOLE_CHECK_NODES = 10_000;
+/** Trees up to this many nodes are checked by the assembling thread itself: about a second. */
+const WHOLE_CHECK_NODES = 2_000;
 
 export async function assemble(held: HeldParcel, desk: Desk): Promise<void> {
   const { lease } = held;
