@@ -86,7 +86,8 @@ describe('engine against brute force', () => {
     const next = sequence(11);
     for (let done = 0; done < 1_500;) {
       const rank = 1 + next(3);
-      const b = Array.from({ length: rank }, () => Array.from({ length: rank + next(2) }, () => BigInt(next(4) - 1)));
+      const width = rank + next(2);
+      const b = Array.from({ length: rank }, () => Array.from({ length: width }, () => BigInt(next(4) - 1)));
       const gram = multiply(b, transpose(b));
       if (determinant(gram) === 0n || gram.some((row, i) => row[i]! > 9n)) continue;
       compare(matrix(rowsOf(gram)), rank + next(rank === 3 ? 2 : 3));

@@ -4,7 +4,7 @@
  */
 import { floorDivide, integerSqrt } from '@palmette/exact';
 import type { FoundOrbit } from './found.ts';
-import { LISTED, type Listed } from './listing.ts';
+import { LISTED, type Listed, type ListingState } from './listing.ts';
 
 interface BigClass {
   readonly mult: number;
@@ -31,7 +31,7 @@ export class BigListing {
   /** Class of each slot in filling order. */
   private slotClass: number[] = [];
   private filled: Slot[] = [];
-  private state: 'fresh' | 'try' | 'back' = 'fresh';
+  private stand: 'fresh' | 'try' | 'back' = 'fresh';
 
   reset(zeros: number): void {
     this.classes = [];
@@ -45,7 +45,7 @@ export class BigListing {
     this.s = norms.slice(0, depth);
     this.slotClass = this.classes.flatMap((c, i) => new Array<number>(c.mult).fill(i));
     this.filled = [];
-    this.state = 'fresh';
+    this.stand = 'fresh';
   }
 
   next(limit: number): Listed {
@@ -53,18 +53,43 @@ export class BigListing {
     for (;;) {
       if (this.steps >= last) return LISTED.paused;
       this.steps += 1;
-      if (this.state === 'fresh') {
+      if (this.stand === 'fresh') {
         if (this.rest === 0n) {
-          this.state = 'back';
+          this.stand = 'back';
           if (this.canEndHere()) return LISTED.found;
-        } else this.state = this.open() ? 'try' : 'back';
-      } else if (this.state === 'back') {
+        } else this.stand = this.open() ? 'try' : 'back';
+      } else if (this.stand === 'back') {
         const top = this.filled.at(-1);
         if (top === undefined) return LISTED.done;
         this.apply(top, -1n);
-        this.state = 'try';
+        this.stand = 'try';
       } else this.tryNext();
     }
+  }
+
+  /** Where it stands; zero columns are slots like others here. */
+  state(): ListingState {
+    const filled = this.stand === 'try' ? this.filled.slice(0, -1) : this.filled;
+    return {
+      filled: filled.length,
+      nonzero: filled.flatMap((slot, i) => (slot.value === 0n ? [] : [[i, slot.value.toString()] as const])),
+      trying: this.stand === 'try' ? this.filled.at(-1)!.value.toString() : null,
+      squares: this.stand === 'back' ? [] : null,
+    };
+  }
+
+  restore(state: ListingState): void {
+    const values = new Map(state.nonzero);
+    for (let slot = 0; slot < state.filled; slot += 1) {
+      this.open();
+      this.filled.at(-1)!.value = BigInt(values.get(slot) ?? 0);
+      this.apply(this.filled.at(-1)!, 1n);
+    }
+    if (state.trying !== null) {
+      this.open();
+      this.filled.at(-1)!.value = BigInt(state.trying);
+      this.stand = 'try';
+    } else this.stand = state.squares === null ? 'fresh' : 'back';
   }
 
   private canEndHere(): boolean {
@@ -114,11 +139,11 @@ export class BigListing {
     top.value -= 1n;
     if (top.value < top.low) {
       this.filled.pop();
-      this.state = 'back';
+      this.stand = 'back';
       return;
     }
     this.apply(top, 1n);
-    if (this.mayStand(top)) this.state = 'fresh';
+    if (this.mayStand(top)) this.stand = 'fresh';
     else this.apply(top, -1n);
   }
 

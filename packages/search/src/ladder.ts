@@ -2,13 +2,16 @@
 import { BigListing } from './big-listing.ts';
 import type { FoundOrbit } from './found.ts';
 import { Columns } from './columns.ts';
-import { Listing, type Listed } from './listing.ts';
+import { Listing, type Listed, type ListingState } from './listing.ts';
 import type { WorkingForm } from './working-form.ts';
 
 export interface Ladder {
   /** Lists the children of the node at `depth` from the beginning. The node was written there by `descend` or is the root. */
   begin(depth: number): void;
   next(depth: number, limit: number): Listed;
+  /** Where the listing at `depth` stands, and how to stand there again after `begin`. */
+  state(depth: number): ListingState;
+  restore(depth: number, state: ListingState): void;
   /** Writes the child that was listed last at `depth` as the node at depth + 1. */
   descend(depth: number): void;
   /** The child that was listed last at depth rank − 1, as an orbit. */
@@ -48,6 +51,14 @@ class SmallLadder implements Ladder {
     const listed = level.next(limit);
     this.steps += level.steps - before;
     return listed;
+  }
+
+  state(depth: number): ListingState {
+    return this.levels[depth]!.state();
+  }
+
+  restore(depth: number, state: ListingState): void {
+    this.levels[depth]!.restore(state);
   }
 
   descend(depth: number): void {
@@ -95,6 +106,14 @@ class BigLadder implements Ladder {
     const listed = level.next(limit);
     this.steps += level.steps - before;
     return listed;
+  }
+
+  state(depth: number): ListingState {
+    return this.levels[depth]!.state();
+  }
+
+  restore(depth: number, state: ListingState): void {
+    this.levels[depth]!.restore(state);
   }
 
   descend(depth: number): void {

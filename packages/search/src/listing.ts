@@ -23,6 +23,14 @@ const SLACK = 1e-6;
 export const LISTED = { found: 1, done: 0, paused: -1 } as const;
 export type Listed = (typeof LISTED)[keyof typeof LISTED];
 
+/** JSON: enough to go on after a restart. */
+export interface ListingState {
+  readonly filled: number;
+  readonly nonzero: readonly (readonly [slot: number, value: number | string])[];
+  readonly trying: number | string | null;
+  readonly squares: readonly number[] | null;
+}
+
 export class Listing {
   readonly columns = new Columns();
   steps = 0;
@@ -69,6 +77,39 @@ export class Listing {
     this.pos = 0;
     this.entering = true;
     this.inSquares = false;
+  }
+
+  /** Where it stands, in few numbers: the slots that are filled, their nonzero values, what is tried, the squares. */
+  state(): ListingState {
+    const nonzero: (readonly [number, number])[] = [];
+    for (let slot = 0; slot < this.pos; slot += 1) if (this.val[slot] !== 0) nonzero.push([slot, this.val[slot]!]);
+    return {
+      filled: this.pos,
+      nonzero,
+      trying: this.entering || this.inSquares ? null : this.val[this.pos]!,
+      squares: this.inSquares ? this.squares.state() : null,
+    };
+  }
+
+  /** Goes to where `state` was taken, after `begin` for the same row. */
+  restore(state: ListingState): void {
+    const values = new Map(state.nonzero);
+    while (this.pos < state.filled) {
+      this.openRange();
+      this.val[this.pos] = Number(values.get(this.pos) ?? 0);
+      this.fill();
+      this.pos += 1;
+    }
+    if (state.trying !== null) {
+      this.openRange();
+      this.val[this.pos] = Number(state.trying);
+      this.entering = false;
+    }
+    if (state.squares === null) return;
+    this.entering = false;
+    this.inSquares = true;
+    this.squares.start(this.rest[this.pos]!, this.columns.zeros);
+    this.squares.restore(state.squares);
   }
 
   private reserveSlots(size: number): void {

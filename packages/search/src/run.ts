@@ -5,7 +5,7 @@
 import { compareAddresses, type Address, type Interval } from './address.ts';
 import type { FoundOrbit } from './found.ts';
 import { openLadder, type Ladder } from './ladder.ts';
-import { LISTED } from './listing.ts';
+import { LISTED, type ListingState } from './listing.ts';
 import type { Plan } from './plan.ts';
 import type { Stage } from './stages.ts';
 import { workingForm, type WorkingForm } from './working-form.ts';
@@ -18,6 +18,14 @@ const STEPS_PER_NODE = 16;
 const COUNTED_CHILDREN = 20_000;
 /** Depths that the share looks at: deeper ones weigh next to nothing. */
 const SHARE_DEPTH = 10;
+
+/** A checkpoint: the listing at each depth of the path, and the number of its next child. Null levels: not begun. */
+interface SavedRun {
+  readonly path: readonly number[];
+  readonly levels: readonly { readonly next: number; readonly listing: ListingState }[] | null;
+  readonly nodes: string;
+  readonly orbits: string;
+}
 
 export class Run {
   nodes = 0n;
@@ -44,12 +52,18 @@ export class Run {
     this.ladder = openLadder(this.form, stage.dimension);
     this.to = interval.to;
     if (checkpoint === undefined) return;
-    const { at, nodes, orbits } = JSON.parse(checkpoint) as { at: number[] | null; nodes: string; orbits: string };
-    this.nodes = BigInt(nodes);
-    this.orbits = BigInt(orbits);
-    if (at === null) return;
-    this.walkTo(at);
+    const saved = JSON.parse(checkpoint) as SavedRun;
+    this.nodes = BigInt(saved.nodes);
+    this.orbits = BigInt(saved.orbits);
+    if (saved.levels === null) return;
     this.begun = true;
+    this.path.push(...saved.path);
+    saved.levels.forEach(({ next, listing }, depth) => {
+      if (depth > 0) this.ladder.descend(depth - 1);
+      this.openChildren(depth);
+      this.ladder.restore(depth, listing);
+      this.index[depth] = next;
+    });
   }
 
   /** Works for about `nodes` nodes. `found` only where one embedding is wanted. */
@@ -151,13 +165,21 @@ export class Run {
     return out;
   }
 
-  /** Where the run stands: the last node that was counted, and the counters. Found orbits must have been taken before. */
+  /** Where the run stands, down to the step of each listing. Found orbits must have been taken before. */
   checkpoint(): string {
-    return JSON.stringify({
-      at: this.begun ? this.path : null,
+    const depths = Math.min(this.path.length + 1, this.form.rank);
+    const saved: SavedRun = {
+      path: this.path,
+      levels: this.begun
+        ? Array.from({ length: depths }, (_, depth) => ({
+            next: this.index[depth]!,
+            listing: this.ladder.state(depth),
+          }))
+        : null,
       nodes: this.nodes.toString(),
       orbits: this.orbits.toString(),
-    });
+    };
+    return JSON.stringify(saved);
   }
 
   /** Ends the interval earlier. The new end must lie after everything that was entered. */
@@ -195,9 +217,10 @@ export class Run {
   get shareDone(): number {
     if (this.finished) return 1;
     if (!this.begun) return 0;
+    const next = this.path.length < this.form.rank ? [...this.path, this.index[this.path.length]!] : this.path;
     const [from, at, to] = [
       this.position(this.interval.from),
-      this.position(this.path),
+      this.position(next),
       this.to === null ? 1 : this.position(this.to),
     ];
     return to > from ? Math.min(1, Math.max(0, (at - from) / (to - from))) : 0;

@@ -10,6 +10,10 @@
  *   whose squares sum to 4 mod 8 when there are exactly 4. So R is divided by 4 and the answers are doubled.
  */
 
+/** Marks of a depth where nothing is left to spend: not yet told, and told. */
+const NOTHING_LEFT = -1;
+const SPENT = -2;
+
 const PAUSED = -1;
 const DONE = 0;
 const FOUND = 1;
@@ -42,6 +46,27 @@ export class SquareSums {
     this.push(r, slots, 1, r);
   }
 
+  /** Where it stands: what was chosen at each depth, in the words of this class. */
+  state(): number[] {
+    return Array.from(this.x.subarray(0, this.depth + 1));
+  }
+
+  /** Goes to where `state` was taken, after `start` with the same numbers. */
+  restore(state: readonly number[]): void {
+    this.depth = -1 + (state.length > 0 ? 1 : 0);
+    state.forEach((x, d) => {
+      this.x[d] = x;
+      if (d + 1 === state.length) return;
+      this.push(this.rest[d]! - x * x, this.slots - d - 1, this.scale[d]!, x);
+    });
+    if (state.at(-1) === SPENT) this.writeValues();
+  }
+
+  private writeValues(): void {
+    this.length = this.depth;
+    for (let i = 0; i < this.depth; i += 1) this.values[i] = this.x[i]! * this.scale[i]!;
+  }
+
   private grow(): void {
     const size = this.x.length * 2;
     for (const key of ['rest', 'scale', 'bound', 'x', 'values'] as const) {
@@ -67,7 +92,7 @@ export class SquareSums {
     this.rest[d] = r;
     this.scale[d] = k;
     this.bound[d] = b;
-    this.x[d] = r === 0 ? -1 : hopeless(r, slots) ? 0 : Math.min(b, floorSqrt(r)) + 1;
+    this.x[d] = r === 0 ? NOTHING_LEFT : hopeless(r, slots) ? 0 : Math.min(b, floorSqrt(r)) + 1;
   }
 
   /** 1: a way was found; 0: there is none left; −1: `limit` steps are used up, go on with the next call. */
@@ -76,15 +101,14 @@ export class SquareSums {
     while (this.depth >= 0) {
       const d = this.depth;
       const r = this.rest[d]!;
-      if (this.x[d] === -1) {
+      if (this.x[d] === NOTHING_LEFT) {
         // nothing left to spend: what stands above is one way
-        this.x[d] = -2;
-        this.length = d;
-        for (let i = 0; i < d; i += 1) this.values[i] = this.x[i]! * this.scale[i]!;
+        this.x[d] = SPENT;
+        this.writeValues();
         return FOUND;
       }
       const slots = this.slots - d;
-      const x = this.x[d] === -2 ? 0 : this.x[d]! - 1;
+      const x = this.x[d] === SPENT ? 0 : this.x[d]! - 1;
       if (x < 1 || x * x * slots < r) {
         this.depth -= 1;
         continue;
