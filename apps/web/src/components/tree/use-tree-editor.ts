@@ -10,12 +10,14 @@ export type Chosen =
 
 export interface TreeEditorState {
   readonly drawn: ComputedRef<model.DrawnTree>;
-  readonly chosen: Ref<Chosen | null>;
+  readonly chosen: Readonly<Ref<Chosen | null>>;
   /** The next vertex that is clicked is joined to the chosen one. */
-  readonly joining: Ref<boolean>;
+  readonly joining: Readonly<Ref<boolean>>;
   readonly canUndo: ComputedRef<boolean>;
   readonly canRedo: ComputedRef<boolean>;
   readonly chosenVertex: ComputedRef<string | null>;
+  choose(what: Chosen | null): void;
+  setJoining(on: boolean): void;
   add(at: model.Point | null, joinTo?: string | null): string;
   weigh(name: string, weight: string): void;
   rename(from: string, to: string): void;
@@ -59,6 +61,8 @@ export function useTreeEditor(first: TreeDraft, changed: (tree: TreeDraft) => vo
     canUndo: computed(() => history.value.past.length > 0),
     canRedo: computed(() => history.value.future.length > 0),
     chosenVertex,
+    choose: (what) => (chosen.value = what),
+    setJoining: (on) => (joining.value = on),
     add(at, joinTo = chosenVertex.value) {
       const name = model.freshName(drawn.value.tree);
       go(model.addVertex(drawn.value, at, joinTo));
