@@ -119,7 +119,7 @@ function filling(facts: ConsequenceFacts): Box {
   }
   return {
     id: 'filling',
-    label: facts.orientation === 'reversed' ? 'Y or −Y as entered, reversed here' : 'Y as entered',
+    label: facts.orientation === 'reversed' ? 'Y as entered; the filling is of −Y' : 'Y as entered',
   };
 }
 
