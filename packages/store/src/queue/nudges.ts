@@ -5,10 +5,11 @@ import type { NudgeQueue } from './nudge-queue.ts';
 
 export class Nudges {
   private readonly callbacks = new Set<() => void>();
-  private readonly timers = new Set<NodeJS.Timeout>();
+  private timer: { readonly at: number; readonly handle: NodeJS.Timeout } | null = null;
   private readonly channel: string;
   private readonly listener: Listener;
   private opening: Promise<void> | null = null;
+  private listening: Promise<void> | null = null;
 
   constructor(
     options: DatabaseOptions,
@@ -50,23 +51,30 @@ export class Nudges {
 
   /** Calls back in this process only: for something that becomes possible after so many milliseconds. */
   later(ms: number): void {
-    if (this.callbacks.size === 0) return;
-    const timer = setTimeout(() => {
-      this.timers.delete(timer);
+    const at = performance.now() + ms;
+    if (this.callbacks.size === 0 || (this.timer !== null && this.timer.at <= at)) return;
+    if (this.timer !== null) clearTimeout(this.timer.handle);
+    const handle = setTimeout(() => {
+      this.timer = null;
       this.callAll();
     }, ms);
-    this.timers.add(timer);
+    this.timer = { at, handle };
   }
 
   async close(): Promise<void> {
-    for (const timer of this.timers) clearTimeout(timer);
+    if (this.timer !== null) clearTimeout(this.timer.handle);
     this.callbacks.clear();
     await this.listener.close();
     await this.queue.close();
   }
 
+  /** Each half once, also when the other had to be tried again. */
   private async open(): Promise<void> {
-    await this.listener.open();
+    this.listening ??= this.listener.open();
+    await this.listening.catch((error: unknown) => {
+      this.listening = null;
+      throw error;
+    });
     await this.queue.take(() => this.callAll());
   }
 

@@ -31,7 +31,11 @@ export function pgBossNudges(options: DatabaseOptions, sql: Sql): NudgeQueue {
       schedule: false,
     });
     boss.on('error', options.onError);
-    await boss.start();
+    await boss.start().catch(async (error: unknown) => {
+      // a start that failed is not stopped by `stop`: its pool would go on
+      await (boss.getDb() as PgBoss.Db & { close?(): Promise<void> }).close?.();
+      throw error;
+    });
     return boss;
   };
 
