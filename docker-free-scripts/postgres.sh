@@ -121,7 +121,7 @@ start_server() {
   choose_port
   options="-p $port -c listen_addresses=127.0.0.1 -c unix_socket_directories= -c max_connections=300"
   if [ -n "${PALMETTE_PG_FAST:-}" ]; then
-    options+=' -c fsync=off -c synchronous_commit=off -c full_page_writes=off'
+    options+=' -c fsync=off -c full_page_writes=off'
   fi
   for _ in $(seq 10); do
     as_owner "$bin/pg_ctl" start -w -t 60 -s -D "$data" -l "$folder/log" -o "$options" >/dev/null 2>&1 9>&- && return

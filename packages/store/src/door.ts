@@ -220,7 +220,11 @@ export interface WorkStore {
     report: { busy: number; memoryBytes: number; leases: readonly { parcelId: string; attempt: number }[] },
   ): Promise<{ standBy: boolean; advice: ReadonlyMap<string, Advice> }>;
   stationStopped(stationId: string): Promise<void>;
-  /** The next parcel in fair turn within everybody's allowance, or null. When all is busy it may ask a running parcel to yield. */
+  /**
+   * The next parcel in fair turn within everybody's allowance, or null. When all is busy it may ask a running parcel to
+   * yield. A search whose budget is used up is handed out once nothing of it runs, with `budgetLeftMs` ≤ 0: the worker
+   * ends it with `spend`.
+   */
   claim(
     stationId: string,
     options: { freeWorkers: number; revisions: readonly number[]; canRunAlone: boolean },
@@ -265,9 +269,12 @@ export interface WorkStore {
   /** Draft bytes of a certificate that is still being checked in parcels. */
   keepDraft(searchId: string, raw: readonly Uint8Array[]): Promise<void>;
   draft(searchId: string): Promise<Uint8Array[]>;
-  /** Settled: verdict, certificate, usage, letters to be sent, in one transaction. False if the search had already ended. */
+  /**
+   * Settled: verdict, certificate, letters to be sent, in one transaction. False if the search had already ended; false
+   * also while it is held or spent: then its parcel waits and is done again when the search goes on.
+   */
   settle(searchId: string, verdict: VerdictWrite, letters: LetterWriter): Promise<boolean>;
-  /** Budget used up (or memory): partial results stay; can be extended and goes on where it was. */
+  /** Budget used up (or memory): partial results stay; running parcels are asked to yield and may still write. Can be extended and goes on where it was. */
   spend(searchId: string, reason: string, letters: LetterWriter): Promise<boolean>;
   broken(searchId: string, reason: string, letters: LetterWriter): Promise<boolean>;
   /** A worker process died with this lease: counts the crash, makes it run alone, `broken` after three alone. */
