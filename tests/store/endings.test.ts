@@ -127,6 +127,28 @@ describe('a budget', () => {
     await expect(store.questions.extend(ines, id, 500)).rejects.toBeInstanceOf(Refusal);
   });
 
+  it('grows while the search waits, runs or is held; a worker with the old figure does not end it', async () => {
+    const station = await f.station(4);
+    const { id, leases } = await running(station, 1, 1_000);
+    await store.questions.extend(ines, id, 500);
+    expect(await state(id)).toMatchObject({ state: 'searching', budgetCpuSeconds: 1.5 });
+    expect(await store.work.checkpoint(leases[0]!, written({ checkpoint: 'g', nodes: 1n, cpuMs: 1_200 }))).toBe(
+      'go on',
+    );
+    await store.work.release(leases[0]!);
+    expect(await store.work.spend(leases[0]!.searchId, 'used up', LETTERS, true)).toBe(false);
+    await store.questions.hold(ines, id);
+    await store.questions.extend(ines, id, 500);
+    expect(await state(id)).toMatchObject({ state: 'held', budgetCpuSeconds: 2 });
+    await store.questions.resume(ines, id);
+    const again = (await f.claim(station))!;
+    expect(again.budgetLeftMs).toBe(800);
+    await store.work.checkpoint(again, written({ checkpoint: 'h', nodes: 1n, cpuMs: 800 }));
+    expect(await store.work.spend(again.searchId, 'used up', LETTERS, true)).toBe(true);
+    const unlimited = await f.ask(ines, studyId);
+    await expect(store.questions.extend(ines, unlimited, 500)).rejects.toMatchObject({ code: 'state' });
+  });
+
   it('that is used up by several workers is handed to one of them, who ends the search', async () => {
     const station = await f.station(4);
     const { leases } = await running(station, 2, 1_000);

@@ -274,8 +274,9 @@ export interface WorkStore {
    * also while it is held or spent: then its parcel waits and is done again when the search goes on.
    */
   settle(searchId: string, verdict: VerdictWrite, letters: LetterWriter): Promise<boolean>;
-  /** Budget used up (or memory): partial results stay; running parcels are asked to yield and may still write. Can be extended and goes on where it was. */
-  spend(searchId: string, reason: string, letters: LetterWriter): Promise<boolean>;
+  /** Budget used up (or memory): partial results stay; running parcels are asked to yield and may still write. Can be extended
+   * and goes on where it was. With `onlyIfUsedUp` nothing happens (false) where the budget was extended meanwhile. */
+  spend(searchId: string, reason: string, letters: LetterWriter, onlyIfUsedUp?: boolean): Promise<boolean>;
   broken(searchId: string, reason: string, letters: LetterWriter): Promise<boolean>;
   /** A worker process died with this lease: counts the crash, makes it run alone, `broken` after three alone. */
   crashed(lease: Lease, reason: string, letters: LetterWriter): Promise<void>;

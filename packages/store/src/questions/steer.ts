@@ -50,20 +50,35 @@ export function withdraw(context: QuestionsContext, by: Actor, questionId: strin
   });
 }
 
-/** Adds to the budget, counted from where the search stopped; the plan and everything that was found stay. */
+/**
+ * Adds to the budget; the plan and everything that was found stay. A spent search waits again, with the addition counted
+ * from where it stopped; one that is not spent yet goes on as it is.
+ */
 export function extend(context: QuestionsContext, by: Actor, questionId: string, cpuMs: number): Promise<void> {
   return steer(context, by, questionId, 'extend', async (tx, search) => {
-    if (search.state !== 'spent') throw wrongState(search, 'extended');
-    await tx.change(
-      `update search set budget_cpu_ms = case when budget_cpu_ms is not null then greatest(budget_cpu_ms, cpu_ms) + $2 end,
-         ending_no = ending_no + 1, reason = null,
-         ended_at = null, state = case
-           when exists (select 1 from parcel where search_id = $1 and state = 'leased') then 'searching' else 'waiting' end
-       where id = $1`,
-      [search.id, Math.round(cpuMs)],
+    const more = Math.round(cpuMs);
+    if (search.state === 'spent') return extendSpent(tx, search, more);
+    if (!CAN_GROW.includes(search.state)) throw wrongState(search, 'extended');
+    const grown = await tx.change(
+      'update search set budget_cpu_ms = budget_cpu_ms + $2 where id = $1 and budget_cpu_ms is not null',
+      [search.id, more],
     );
-    await tx.change(`update parcel set yield_wanted = false where search_id = $1 and state = 'leased'`, [search.id]);
+    if (grown === 0) throw new Refusal('state', 'this search has no budget that could be extended');
   });
+}
+
+const CAN_GROW: readonly SearchState[] = ['waiting', 'searching', 'held'];
+
+async function extendSpent(tx: Transaction, search: Steered, more: number): Promise<void> {
+  await tx.change(
+    `update search set ending_no = ending_no + 1, reason = null, ended_at = null,
+       budget_cpu_ms = case when budget_cpu_ms is not null then greatest(budget_cpu_ms, cpu_ms) + $2 end,
+       state = case
+         when exists (select 1 from parcel where search_id = $1 and state = 'leased') then 'searching' else 'waiting' end
+     where id = $1`,
+    [search.id, more],
+  );
+  await tx.change(`update parcel set yield_wanted = false where search_id = $1 and state = 'leased'`, [search.id]);
 }
 
 /** Only members who may ask may steer. The row of the search is locked until the change is committed. */

@@ -56,8 +56,13 @@ export async function spend(
   searchId: string,
   reason: string,
   letters: LetterWriter,
+  onlyIfUsedUp: boolean,
 ): Promise<boolean> {
-  return context.database.transaction((tx) => spendIn(context, tx, searchId, reason, letters));
+  return context.database.transaction(async (tx) => {
+    const { cpu_ms, budget_cpu_ms } = await lockSearch(tx, searchId);
+    const usedUp = budget_cpu_ms !== null && Number(cpu_ms) >= Number(budget_cpu_ms);
+    return onlyIfUsedUp && !usedUp ? false : spendIn(context, tx, searchId, reason, letters);
+  });
 }
 
 export async function spendIn(

@@ -30,7 +30,7 @@ export function openWork(context: WorkContext): WorkStore {
     keepDraft: (searchId, raw) => keepDraft(database, searchId, raw),
     draft: (searchId) => readDraft(database, searchId),
     settle: (searchId, verdict, letters) => settle(context, searchId, verdict, letters),
-    spend: (searchId, reason, letters) => spend(context, searchId, reason, letters),
+    spend: (searchId, reason, letters, onlyIfUsedUp = false) => spend(context, searchId, reason, letters, onlyIfUsedUp),
     broken: (searchId, reason, letters) => broken(context, searchId, reason, letters),
     crashed: (lease, reason, letters) => crashed(context, lease, reason, letters),
     sweep: (options) => sweep(context, options),
