@@ -21,6 +21,12 @@ async function main(args: readonly string[]): Promise<number> {
   throw new UsageError(command === undefined ? 'expected a command' : `expected answer or check, found ${command}`);
 }
 
+// a reader that has seen enough (head, less) closes the pipe: that is no fault
+process.stdout.on('error', (error: NodeJS.ErrnoException) => {
+  if (error.code === 'EPIPE') process.exit(0);
+  throw error;
+});
+
 try {
   process.exitCode = await main(process.argv.slice(2));
 } catch (error) {

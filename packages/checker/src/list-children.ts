@@ -1,236 +1,192 @@
 /**
- * The children of a node of the tree of rows, each once (FORMAT.md, rule C), in exact integers: as doubles where every
- * norm is below 2^25, so that no product reaches 2^53, as bigint otherwise.
+ * The children of a node of the tree of rows, each once (FORMAT.md, rule C), in exact integers.
  *
- * Column by column the nonzero values of its copies are chosen, descending (what is not chosen stays 0). R is the norm
- * still to spend, b_i what row i still has to be met by, S_i the squares of row i in copies not yet decided. Cuts: N and
- * CS of FORMAT.md, and nothing else: R ≥ 0 always, b_i² ≤ R·S_i for each row of a column that was decided.
- * At the end every b_i is 0 and R is spread over zero columns as squares.
+ * Column by column the nonzero values of its copies are chosen, descending; then the column is closed, its other copies
+ * staying 0. R is the norm still to spend, b_i what row i still has to be met by, S_i the squares of row i in copies not
+ * decided yet. Cuts: N and CS of FORMAT.md and nothing else: R ≥ 0, and b_i² ≤ R·S_i for each row of a column in which
+ * something was decided. At the end every b_i is 0 and R goes to zero columns as squares.
+ *
+ * The code is written with the operators that doubles and bigint share. `Int` stands for either; all constants come from
+ * `Kind`. As doubles it is exact while every norm is below 2^25: no product of two intermediates reaches 2^53.
  */
-import { rootOf } from './arithmetic.ts';
-import type { Column, Filling, NodeColumns } from './node-columns.ts';
+import type { Filling, NodeColumns } from './node-columns.ts';
+import { squareSums } from './square-sums.ts';
 
-/** Integer operations, once for doubles and once for bigint. */
-export interface Ring<T> {
-  readonly zero: T;
-  readonly one: T;
-  of(x: number): T;
-  add(a: T, b: T): T;
-  sub(a: T, b: T): T;
-  mul(a: T, b: T): T;
-  less(a: T, b: T): boolean;
+/** A double with an integer value, or a bigint: one kind throughout a run. */
+export type Int = number;
+
+export interface Kind {
+  readonly zero: Int;
+  readonly one: Int;
+  readonly of: (x: number) => Int;
   /** Largest s with s² ≤ a. */
-  root(a: T): T;
-  /** a / 4 if 8 divides a, else null. */
-  quarterOfEighth(a: T): T | null;
-  /** ⌊a / 2⌋ for a ≥ 0. */
-  half(a: T): T;
+  readonly root: (a: Int) => Int;
+  readonly half: (a: Int) => Int;
 }
-
-export const doubles: Ring<number> = {
-  zero: 0,
-  one: 1,
-  of: (x) => x,
-  add: (a, b) => a + b,
-  sub: (a, b) => a - b,
-  mul: (a, b) => a * b,
-  less: (a, b) => a < b,
-  root: (a) => {
-    let s = Math.floor(Math.sqrt(a));
-    while (s * s > a) s -= 1;
-    while ((s + 1) * (s + 1) <= a) s += 1;
-    return s;
-  },
-  quarterOfEighth: (a) => (a % 8 === 0 ? a / 4 : null),
-  half: (a) => Math.floor(a / 2),
-};
-
-export const bigints: Ring<bigint> = {
-  zero: 0n,
-  one: 1n,
-  of: BigInt,
-  add: (a, b) => a + b,
-  sub: (a, b) => a - b,
-  mul: (a, b) => a * b,
-  less: (a, b) => a < b,
-  root: rootOf,
-  quarterOfEighth: (a) => (a % 8n === 0n ? a / 4n : null),
-  half: (a) => a / 2n,
-};
 
 /** Counts one unit of work. */
 export type Tick = () => void;
 
-/** @param inner inner products of the new row with the rows 0 … depth − 1; @param norms their norms */
-export function* listChildren<T extends number | bigint>(
-  ring: Ring<T>,
-  node: NodeColumns<T>,
-  norm: T,
-  inner: readonly T[],
-  norms: readonly T[],
-  tick: Tick,
-): Generator<Filling<T>> {
-  const { sub, mul, less, zero } = ring;
-  const order = fillingOrder(node, zero, inner);
-  const b = [...inner];
-  const s = [...norms];
-  const values: T[][] = node.columns.map(() => []);
-  let unmet = b.filter((x) => x !== zero).length;
-
-  /** Takes a copy with value v into the inner products (sign 1) or out of them (sign −1). */
-  const put = (column: Column<T>, v: T, sign: T) => {
-    for (const [i, p] of column.entries) {
-      const before = b[i]!;
-      b[i] = sub(before, mul(sign, mul(p, v)));
-      if (before === zero && b[i] !== zero) unmet += 1;
-      if (before !== zero && b[i] === zero) unmet -= 1;
-    }
-  };
-  /** Takes copies of a column out of the squares still open (sign 1), or puts them back (sign −1). */
-  const decide = (column: Column<T>, copies: T, sign: T) => {
-    for (const [i, p] of column.entries) s[i] = sub(s[i]!, mul(sign, mul(copies, mul(p, p))));
-  };
-  const mayGoOn = (column: Column<T>, r: T) => column.entries.every(([i]) => !less(mul(r, s[i]!), mul(b[i]!, b[i]!)));
-
-  // explicit stack: one frame for each value chosen, or for "no more values in this column"
-  interface Frame {
-    readonly place: number;
-    readonly r: T;
-    next: T;
-    readonly low: T;
-    chosen: T | null;
-    closed: boolean;
-  }
-  const minus = sub(zero, ring.one);
-  const open = (place: number, r: T): Frame => {
-    const column = node.columns[order[place]!]!;
-    const list = values[order[place]!]!;
-    const high = ring.root(r);
-    const before = list.at(-1);
-    return {
-      place,
-      r,
-      next: before !== undefined && less(before, high) ? before : high,
-      low: list.length < column.count ? sub(zero, high) : ring.one,
-      chosen: null,
-      closed: false,
-    };
-  };
-  const stack: Frame[] = [];
-  if (order.length === 0) {
-    if (unmet === 0) for (const onZeros of squareSums(ring, norm, node.zeros, tick)) yield { values, onZeros };
-    return;
-  }
-  stack.push(open(0, norm));
-  while (stack.length > 0) {
-    const frame = stack.at(-1)!;
-    const column = node.columns[order[frame.place]!]!;
-    const list = values[order[frame.place]!]!;
-    tick();
-    if (frame.chosen !== null) {
-      put(column, frame.chosen, minus);
-      decide(column, ring.one, minus);
-      list.pop();
-      frame.chosen = null;
-    }
-    if (frame.closed) {
-      // the column had been closed with zeros for its last copies: that was the last choice of this frame
-      decide(column, ring.of(column.count - list.length), minus);
-      stack.pop();
-      continue;
-    }
-    const full = list.length === column.count;
-    if (!full && !less(frame.next, frame.low)) {
-      const v = frame.next;
-      frame.next = sub(v, ring.one);
-      if (v === zero) continue;
-      const r = sub(frame.r, mul(v, v));
-      if (less(r, zero)) continue;
-      put(column, v, ring.one);
-      decide(column, ring.one, ring.one);
-      list.push(v);
-      frame.chosen = v;
-      if (mayGoOn(column, r)) stack.push(open(frame.place, r));
-      continue;
-    }
-    // no further value: the remaining copies are 0
-    frame.closed = true;
-    decide(column, ring.of(column.count - list.length), ring.one);
-    if (!mayGoOn(column, frame.r)) continue;
-    if (frame.place + 1 < order.length && frame.r !== zero) {
-      stack.push(open(frame.place + 1, frame.r));
-      continue;
-    }
-    if (unmet === 0) for (const onZeros of squareSums(ring, frame.r, node.zeros, tick)) yield { values, onZeros };
-  }
+/** Where columns are filled: a frame for each chosen value, and one for each closing. */
+interface Frame {
+  place: number;
+  rest: Int;
+  /** Next value to try, and the last. */
+  value: Int;
+  low: Int;
+  /** What stands: nothing, a value, or the closing of the column. */
+  stands: 'nothing' | 'value' | 'closing';
 }
 
-/** Columns that meet a row which has to be met come first, then the youngest columns. */
-function fillingOrder<T extends number | bigint>(node: NodeColumns<T>, zero: T, inner: readonly T[]): number[] {
-  const wanted = node.columns.map(({ entries }) => entries.reduce((best, [i]) => (inner[i] === zero ? best : i), -1));
-  const last = node.columns.map(({ entries }) => entries.at(-1)![0]);
-  return node.columns.map((_, c) => c).sort((x, y) => wanted[y]! - wanted[x]! || last[y]! - last[x]! || x - y);
+/** @param inner inner products of the new row with the rows before it; @param norms their norms */
+export function* listChildren(
+  kind: Kind,
+  node: NodeColumns,
+  norm: Int,
+  inner: readonly Int[],
+  norms: readonly Int[],
+  tick: Tick,
+): Generator<Filling> {
+  const { zero, one } = kind;
+  const { columns } = node;
+  const order = fillingOrder(node, zero, inner);
+  const b = inner.slice();
+  const s = norms.slice(0, inner.length);
+  const values: Int[][] = columns.map(() => []);
+  let unmet = 0;
+  for (const x of b) if (x !== zero) unmet += 1;
+  if (order.length === 0) {
+    if (unmet === 0) for (const onZeros of squareSums(kind, norm, node.zeros, tick)) yield { values, onZeros };
+    return;
+  }
+
+  const frames: Frame[] = [];
+  let depth = -1;
+  const open = (place: number, rest: Int) => {
+    depth += 1;
+    const frame = (frames[depth] ??= { place, rest, value: zero, low: zero, stands: 'nothing' });
+    const c = order[place]!;
+    const list = values[c]!;
+    const root = kind.root(rest);
+    const before = list.length > 0 ? list[list.length - 1]! : root;
+    frame.place = place;
+    frame.rest = rest;
+    frame.value = (before < root ? before : root) + one;
+    frame.low = list.length < columns[c]!.count ? -root : frame.value;
+    frame.stands = 'nothing';
+  };
+  open(0, norm);
+  while (depth >= 0) {
+    tick();
+    const frame = frames[depth]!;
+    const c = order[frame.place]!;
+    const { rows, entries, count } = columns[c]!;
+    const list = values[c]!;
+    if (frame.stands === 'closing') {
+      const copies = kind.of(count - list.length);
+      for (let e = 0; e < rows.length; e += 1) s[rows[e]!]! += copies * entries[e]! * entries[e]!;
+      depth -= 1;
+      continue;
+    }
+    if (frame.stands === 'value') {
+      for (let e = 0; e < rows.length; e += 1) {
+        const i = rows[e]!;
+        const p = entries[e]!;
+        const old = b[i]!;
+        const now = old + p * frame.value;
+        b[i] = now;
+        if (old === zero) unmet += 1;
+        else if (now === zero) unmet -= 1;
+        s[i]! += p * p;
+      }
+      list.pop();
+      frame.stands = 'nothing';
+    }
+    frame.value -= one;
+    if (frame.value === zero) frame.value -= one;
+    if (frame.value >= frame.low) {
+      const v = frame.value;
+      const rest = frame.rest - v * v;
+      if (rest < zero) continue;
+      let possible = true;
+      for (let e = 0; e < rows.length; e += 1) {
+        const i = rows[e]!;
+        const p = entries[e]!;
+        const old = b[i]!;
+        const now = old - p * v;
+        b[i] = now;
+        if (old === zero) unmet += 1;
+        else if (now === zero) unmet -= 1;
+        s[i]! -= p * p;
+        if (now * now > rest * s[i]!) possible = false;
+      }
+      list.push(v);
+      frame.stands = 'value';
+      if (possible) open(frame.place, rest);
+      continue;
+    }
+    // no further value: the other copies stay 0
+    const copies = kind.of(count - list.length);
+    let possible = true;
+    for (let e = 0; e < rows.length; e += 1) {
+      const i = rows[e]!;
+      s[i]! -= copies * entries[e]! * entries[e]!;
+      if (b[i]! * b[i]! > frame.rest * s[i]!) possible = false;
+    }
+    frame.stands = 'closing';
+    if (!possible) continue;
+    if (frame.place + 1 < order.length && frame.rest !== zero) open(frame.place + 1, frame.rest);
+    else if (unmet === 0)
+      for (const onZeros of squareSums(kind, frame.rest, node.zeros, tick)) yield { values, onZeros };
+  }
 }
 
 /**
- * All ways to write r as at most `slots` squares of positive integers, descending. With four slots or fewer and 8 | r all
- * are even: squares are 0, 1, 4 mod 8, and one to four odd ones give 1 to 4 mod 4 short of 0 mod 8.
+ * Which columns to fill first: those that finish a row soonest. Rows that have to be met count first; of them, and then
+ * of all, the one with the fewest copies left is finished next.
  */
-export function* squareSums<T extends number | bigint>(
-  ring: Ring<T>,
-  r: T,
-  slots: number,
-  tick: Tick,
-  most?: T,
-): Generator<readonly T[]> {
-  interface Level {
-    readonly r: T;
-    readonly scale: T;
-    x: T;
+function fillingOrder(node: NodeColumns, zero: Int, inner: readonly Int[]): number[] {
+  const { columns } = node;
+  const left = new Array<number>(inner.length).fill(0);
+  const users: number[][] = inner.map(() => []);
+  columns.forEach(({ rows, count }, c) => {
+    for (const i of rows) {
+      left[i]! += count;
+      users[i]!.push(c);
+    }
+  });
+  const taken = new Uint8Array(columns.length);
+  const touched = new Uint8Array(inner.length);
+  const order: number[] = [];
+  let near: number[] = [];
+  for (let i = inner.length - 1; i >= 0; i -= 1) {
+    if (inner[i] === zero) continue;
+    touched[i] = 1;
+    near.push(i);
   }
-  const level = (rest: T, used: number, scale: T, bound: T | undefined): Level => {
-    let left: T = rest;
-    let k: T = scale;
-    let top: T | undefined = bound;
-    const free = slots - used;
-    for (
-      let quarter = ring.quarterOfEighth(left);
-      free <= 4 && left !== ring.zero && quarter !== null;
-      quarter = ring.quarterOfEighth(left)
-    ) {
-      left = quarter;
-      k = ring.add(k, k);
-      if (top !== undefined) top = ring.half(top);
+  let far = inner.length - 1;
+  while (order.length < columns.length) {
+    if (near.length === 0) {
+      while (touched[far] === 1) far -= 1;
+      touched[far] = 1;
+      near = [far];
     }
-    const root = ring.root(left);
-    return { r: left, scale: k, x: ring.add(top !== undefined && ring.less(top, root) ? top : root, ring.one) };
-  };
-  const stack: Level[] = [level(r, 0, ring.one, most)];
-  while (stack.length > 0) {
-    const top = stack.at(-1)!;
-    const used = stack.length - 1;
-    if (top.r === ring.zero) {
-      yield stack.slice(0, -1).map((l) => ring.mul(l.x, l.scale));
-      stack.pop();
-      continue;
+    let best = 0;
+    for (let k = 1; k < Math.min(near.length, 64); k += 1) if (left[near[k]!]! < left[near[best]!]!) best = k;
+    const row = near[best]!;
+    near[best] = near[near.length - 1]!;
+    near.pop();
+    for (const c of users[row]!) {
+      if (taken[c] === 1) continue;
+      taken[c] = 1;
+      order.push(c);
+      for (const i of columns[c]!.rows) {
+        left[i]! -= columns[c]!.count;
+        if (touched[i] === 1) continue;
+        touched[i] = 1;
+        near.push(i);
+      }
     }
-    tick();
-    top.x = ring.sub(top.x, ring.one);
-    const free = slots - used;
-    // x is the largest of at most `free` squares
-    if (
-      free === 0 ||
-      !ring.less(ring.zero, top.x) ||
-      ring.less(ring.mul(ring.of(free), ring.mul(top.x, top.x)), top.r)
-    ) {
-      stack.pop();
-      continue;
-    }
-    const rest = ring.sub(top.r, ring.mul(top.x, top.x));
-    if (free === 2) {
-      const root = ring.root(rest);
-      if (ring.mul(root, root) !== rest) continue;
-    }
-    stack.push(level(rest, used + 1, top.scale, top.x));
   }
+  return order;
 }

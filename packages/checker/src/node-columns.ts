@@ -1,43 +1,46 @@
 /** The columns of one node of a tree: what is equal up to sign stands once, with its number; zero columns are a number. */
+import type { Int } from './list-children.ts';
 
-export interface Column<T> {
+export interface Column {
   readonly count: number;
-  /** Nonzero entries as [depth, entry]. */
-  readonly entries: readonly (readonly [number, T])[];
+  /** Depths of its nonzero entries, and the entries. */
+  readonly rows: readonly number[];
+  readonly entries: readonly Int[];
 }
 
-export interface NodeColumns<T> {
-  readonly columns: readonly Column<T>[];
+export interface NodeColumns {
+  readonly columns: readonly Column[];
   readonly zeros: number;
 }
 
-/** One way to fill the next row: the values given to each column's copies, and to zero columns. */
-export interface Filling<T> {
-  /** For the column of that place its nonzero values; copies without one keep 0. */
-  readonly values: readonly (readonly T[])[];
-  readonly onZeros: readonly T[];
+/** One way to fill the next row: the nonzero values given to each column's copies, and to zero columns. */
+export interface Filling {
+  readonly values: readonly (readonly Int[])[];
+  readonly onZeros: readonly Int[];
 }
 
+const NONE: readonly never[] = [];
+
 /** The node that a filling leads to. */
-export function child<T extends number | bigint>(
-  node: NodeColumns<T>,
-  depth: number,
-  filling: Filling<T>,
-): NodeColumns<T> {
-  const columns: Column<T>[] = [];
-  const runs = (values: readonly T[], entries: Column<T>['entries']) => {
+export function child(node: NodeColumns, depth: number, filling: Filling): NodeColumns {
+  const columns: Column[] = [];
+  const addRuns = (values: readonly Int[], rows: readonly number[], entries: readonly Int[]) => {
     for (let i = 0; i < values.length;) {
-      let j = i;
+      let j = i + 1;
       while (j < values.length && values[j] === values[i]) j += 1;
-      columns.push({ count: j - i, entries: [...entries, [depth, values[i]!]] });
+      columns.push({ count: j - i, rows: [...rows, depth], entries: [...entries, values[i]!] });
       i = j;
     }
   };
   node.columns.forEach((column, c) => {
     const values = filling.values[c]!;
-    runs(values, column.entries);
-    if (values.length < column.count) columns.push({ count: column.count - values.length, entries: column.entries });
+    if (values.length === 0) {
+      columns.push(column);
+      return;
+    }
+    addRuns(values, column.rows, column.entries);
+    if (values.length < column.count) columns.push({ ...column, count: column.count - values.length });
   });
-  runs(filling.onZeros, []);
+  addRuns(filling.onZeros, NONE, NONE);
   return { columns, zeros: node.zeros - filling.onZeros.length };
 }

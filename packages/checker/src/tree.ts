@@ -2,8 +2,8 @@
  * The tree of rows, enumerated again by the checker: nodes and orbits of an interval, in the checker's own order of
  * children. A run can stop after any slice of work and go on from a checkpoint; intervals that abut cover the tree.
  */
-import type { Matrix } from './arithmetic.ts';
-import { bigints, doubles, listChildren, type Ring } from './list-children.ts';
+import { rootOf, type Matrix } from './arithmetic.ts';
+import { listChildren, type Int, type Kind } from './list-children.ts';
 import { child, type Filling, type NodeColumns } from './node-columns.ts';
 
 /** What has to be enumerated, and what the certificate says about it. */
@@ -36,31 +36,60 @@ export interface CheckRun {
 const DOUBLE_BOUND = 2n ** 25n;
 const TICKS_PER_NODE = 32;
 
+const doubles: Kind = {
+  zero: 0,
+  one: 1,
+  of: (x) => x,
+  root: (a) => {
+    let root = Math.floor(Math.sqrt(a));
+    while (root * root > a) root -= 1;
+    while ((root + 1) * (root + 1) <= a) root += 1;
+    return root;
+  },
+  half: (a) => Math.floor(a / 2),
+};
+
+/** The same words for bigint; the code that uses a kind has only operators that both share. */
+const bigints = {
+  zero: 0n,
+  one: 1n,
+  of: BigInt,
+  root: rootOf,
+  half: (a: bigint) => a / 2n,
+} as unknown as Kind;
+
 export function openCheckRun(tree: CheckTree, interval: CheckInterval, checkpoint?: string): CheckRun {
-  const small =
-    tree.gram.every((row, i) => row[i]! < DOUBLE_BOUND) || (tree.gram.length === 1 && tree.gram[0]![0]! < 2n ** 53n);
-  return small
-    ? new Enumeration(doubles, tree, interval, Number, checkpoint)
-    : new Enumeration(bigints, tree, interval, (x) => x, checkpoint);
+  const norms = tree.gram.map((row, i) => row[i]!);
+  const small = norms.every((norm) => norm < DOUBLE_BOUND) || (norms.length === 1 && norms[0]! < 2n ** 53n);
+  const convert = small ? Number : (x: bigint) => x as unknown as Int;
+  return new Enumeration(small ? doubles : bigints, tree, interval, convert, checkpoint);
 }
 
-class Enumeration<T extends number | bigint> implements CheckRun {
+/** Where a run stands: the node it is at, how many of its children were entered, and the counts. Null: not begun. */
+interface SavedCheck {
+  readonly at: readonly number[] | null;
+  readonly taken: number;
+  readonly nodes: string;
+  readonly orbits: string;
+}
+
+class Enumeration implements CheckRun {
   nodes = 0n;
   orbits = 0n;
   private readonly rank: number;
-  private readonly norms: readonly T[];
-  private readonly inner: readonly (readonly T[])[];
+  private readonly norms: readonly Int[];
+  private readonly inner: readonly (readonly Int[])[];
   /** The node at each depth of the path, the listing of its children, and how many of them were taken. */
-  private readonly levels: { node: NodeColumns<T>; listing: Generator<Filling<T>>; taken: number }[] = [];
+  private readonly levels: { node: NodeColumns; listing: Generator<Filling>; taken: number }[] = [];
   private readonly path: number[] = [];
   private state: 'new' | 'running' | 'done' = 'new';
   private ticks = 0;
 
   constructor(
-    private readonly ring: Ring<T>,
+    private readonly kind: Kind,
     tree: CheckTree,
     private readonly interval: CheckInterval,
-    convert: (x: bigint) => T,
+    convert: (x: bigint) => Int,
     checkpoint?: string,
   ) {
     this.rank = tree.gram.length;
@@ -68,11 +97,16 @@ class Enumeration<T extends number | bigint> implements CheckRun {
     this.inner = tree.gram.map((row, i) => row.slice(0, i).map(convert));
     this.dimension = tree.dimension;
     if (checkpoint === undefined) return;
-    const saved = JSON.parse(checkpoint) as { at: number[] | null; nodes: string; orbits: string };
+    const saved = JSON.parse(checkpoint) as SavedCheck;
     this.nodes = BigInt(saved.nodes);
     this.orbits = BigInt(saved.orbits);
     if (saved.at === null) return;
     this.goTo(saved.at);
+    const level = this.levels[this.path.length];
+    while (level !== undefined && level.taken < saved.taken) {
+      level.listing.next();
+      level.taken += 1;
+    }
     this.state = 'running';
   }
 
@@ -111,7 +145,7 @@ class Enumeration<T extends number | bigint> implements CheckRun {
   }
 
   /** Goes to the next child of the last level; false if there is none. */
-  private step(level: { node: NodeColumns<T>; listing: Generator<Filling<T>>; taken: number }): boolean {
+  private step(level: { node: NodeColumns; listing: Generator<Filling>; taken: number }): boolean {
     const next = level.listing.next();
     if (next.done === true) return false;
     const depth = this.path.length;
@@ -121,10 +155,10 @@ class Enumeration<T extends number | bigint> implements CheckRun {
     return true;
   }
 
-  private open(node: NodeColumns<T>): void {
+  private open(node: NodeColumns): void {
     const depth = this.path.length;
     const listing = listChildren(
-      this.ring,
+      this.kind,
       node,
       this.norms[depth]!,
       this.inner[depth]!,
@@ -155,11 +189,13 @@ class Enumeration<T extends number | bigint> implements CheckRun {
   }
 
   checkpoint(): string {
-    return JSON.stringify({
+    const saved: SavedCheck = {
       at: this.state === 'new' ? null : this.path,
+      taken: this.levels[this.path.length]?.taken ?? 0,
       nodes: this.nodes.toString(),
       orbits: this.orbits.toString(),
-    });
+    };
+    return JSON.stringify(saved);
   }
 
   get shareDone(): number {
