@@ -107,7 +107,7 @@ function edits(certificate: { [key: string]: Json }): [string, Edit][] {
   ]);
   out.push(['the source changed', (c) => (at(c, 'question')['source'] = { kind: 'matrix', rows: [[97]] })]);
   out.push(['an unknown key', (c) => (at(c, 'claim')['remark'] = 'true')]);
-  out.push(['the evidence dropped', (c) => (c['evidence'] = { exclusions: [], list: null })]);
+  if (tree !== undefined) out.push(['the evidence dropped', (c) => (c['evidence'] = { exclusions: [], list: null })]);
   if (tree?.['nodes'] !== undefined) {
     out.push(['the nodes changed', (c) => (at(c, 'evidence', 'list')['nodes'] = plusOne(tree['nodes']))]);
     out.push([
