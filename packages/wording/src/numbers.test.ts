@@ -28,7 +28,7 @@ describe('numbers in words', () => {
 
   it('cuts what does not fit on a line and says how many digits there are', () => {
     const total = (2n ** 51n * 10n ** 66n).toString();
-    expect(countInWords(total)).toBe(thin('225_179…, 82 digits'));
+    expect(countInWords(total)).toBe(thin('225_179… (82 digits)'));
     expect(isCut(total)).toBe(true);
     expect(isCut('123456789012345678901234')).toBe(false);
   });

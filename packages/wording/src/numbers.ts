@@ -19,11 +19,11 @@ export function integerInWords(value: number | string | bigint): string {
   return negative ? MINUS + grouped : grouped;
 }
 
-/** The same, cut beyond 24 digits: “349 274…, 82 digits”. The whole number belongs beside it, in full, on wish. */
+/** The same, cut beyond 24 digits: “349 274… (82 digits)”. The whole number belongs beside it, in full, on wish. */
 export function countInWords(value: string | bigint): string {
   const text = String(value);
   if (text.length <= DIGITS_ON_A_LINE) return integerInWords(text);
-  return `${text.slice(0, 3)}${THIN}${text.slice(3, 6)}…, ${text.length} digits`;
+  return `${text.slice(0, 3)}${THIN}${text.slice(3, 6)}… (${text.length} digits)`;
 }
 
 /** True if `countInWords` does not show every digit. */
