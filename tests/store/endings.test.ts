@@ -156,7 +156,13 @@ describe('a budget', () => {
     await store.work.release(leases[0]!);
     expect(await f.claim(station)).toBeNull(); // the other still writes
     await store.work.release(leases[1]!);
-    expect((await f.claim(station))!.budgetLeftMs).toBe(-600);
+    const last = (await f.claim(station))!;
+    expect(last.budgetLeftMs).toBe(-600);
+    expect(await f.claim(station)).toBeNull();
+    expect(await store.work.spend(last.searchId, 'used up', LETTERS, true)).toBe(true);
+    // its parcel is not in anybody's hand any more
+    expect(await f.sql(`select 1 from parcel where search_id = $1 and state = 'leased'`, [last.searchId])).toEqual([]);
+    await expect(store.work.release(last)).rejects.toBeInstanceOf(FencedOff);
   });
 });
 

@@ -138,7 +138,8 @@ async function leaseFrom(
   if (parcel === undefined) return null;
   await tx.change(
     `update parcel set state = 'leased', attempt = attempt + 1, station_id = $2, leased_at = clock_timestamp(),
-       heartbeat_at = clock_timestamp(), yield_wanted = false, yield_for = null
+       heartbeat_at = clock_timestamp(), yield_wanted = false, yield_for = null,
+       to_spend = (select coalesce(cpu_ms >= budget_cpu_ms, false) from search where id = search_id)
      where id = $1`,
     [parcel.id, stationId],
   );

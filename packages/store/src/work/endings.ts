@@ -7,7 +7,7 @@ import { insertCertificate, keepCertificate } from '../certificates/certificates
 import type { Transaction } from '../database.ts';
 import type { LetterWriter, VerdictWrite } from '../door.ts';
 import { touchStudy } from '../studies/touch-study.ts';
-import { lockSearch } from './lease.ts';
+import { lockSearch, settleDown } from './lease.ts';
 import { writeLetters } from './letters-about.ts';
 import { changedState } from './progress.ts';
 import type { WorkContext } from './work-context.ts';
@@ -61,8 +61,19 @@ export async function spend(
   return context.database.transaction(async (tx) => {
     const { cpu_ms, budget_cpu_ms } = await lockSearch(tx, searchId);
     const usedUp = budget_cpu_ms !== null && Number(cpu_ms) >= Number(budget_cpu_ms);
+    await giveBackToSpend(tx, searchId);
     return onlyIfUsedUp && !usedUp ? false : spendIn(context, tx, searchId, reason, letters);
   });
+}
+
+/** The parcel that was handed out for this has done its work, whatever comes of it. */
+async function giveBackToSpend(tx: Transaction, searchId: string): Promise<void> {
+  const given = await tx.change(
+    `update parcel set state = 'waiting', station_id = null, yield_wanted = false, yield_for = null
+     where search_id = $1 and state = 'leased' and to_spend`,
+    [searchId],
+  );
+  if (given > 0) await settleDown(tx, searchId);
 }
 
 export async function spendIn(
