@@ -32,6 +32,7 @@ export interface ParcelRow {
   readonly state: string;
   readonly attempt: number;
   readonly station_id: string | null;
+  readonly from_address: readonly string[];
   readonly nodes: string;
   readonly cpu_ms: string;
   readonly crashes: number;
@@ -137,7 +138,7 @@ export async function startPool(database: {
     view,
     parcels: (questionId) =>
       sql<ParcelRow>(
-        `select p.id, p.phase, p.state, p.attempt, p.station_id, p.nodes, p.cpu_ms, p.crashes, p.checkpoint
+        `select p.id, p.phase, p.state, p.attempt, p.station_id, p.from_address, p.nodes, p.cpu_ms, p.crashes, p.checkpoint
            from parcel p join search s on s.id = p.search_id where s.question_id = $1 order by p.id`,
         [questionId],
       ),
@@ -173,7 +174,7 @@ export async function startPool(database: {
           LEASE_SECONDS: '2',
           HEARTBEAT_SECONDS: '0.5',
           SWEEP_SECONDS: '0.5',
-          CHECKPOINT_SECONDS: '0.2',
+          CHECKPOINT_SECONDS: '0.1',
           SPOOL_FOLDER: join(folder, `spool-${name}`),
           ...env,
         },
@@ -190,8 +191,8 @@ export async function startPool(database: {
       };
       stations.add(station);
       await until(`station ${name} takes work`, () => {
-        if (child.exitCode !== null) throw new Error(`station ${name} ended: ${log.join('\n')}`);
-        return log.some((line) => line.includes('taking work'));
+        if (log.some((line) => line.includes('taking work'))) return true;
+        throw new Error(`station ${name}, exit ${child.exitCode}, said: ${log.join('\n')}`);
       });
       return station;
     },

@@ -121,7 +121,7 @@ describe('its owner', () => {
   });
 
   it('holds and resumes it; it goes on from where it was', async () => {
-    const { id, document } = await pool.ask(ada, 20_000, 'spin 10000');
+    const { id, document } = await pool.ask(ada, 20_000, 'spin 15000');
     await until('it has got somewhere', async () => (await pool.parcels(id)).some((p) => Number(p.nodes) > 0));
     await pool.store.questions.hold(ada, id);
     await until(
@@ -140,7 +140,7 @@ describe('its owner', () => {
   });
 
   it('extends a spent budget, and it goes on to the same certificate', async () => {
-    const { id, document } = await pool.ask(ada, 20_000, 'spin 10000', 500);
+    const { id, document } = await pool.ask(ada, 20_000, 'spin 15000', 500);
     const spent = await pool.reaches(ada, id, ['spent', 'settled', 'broken']);
     expect(spent).toMatchObject({ state: 'spent', verdict: 'open', certificate: null });
     expect(spent.reason).toContain('budget');

@@ -11,6 +11,8 @@ describe('an outage', () => {
     coded('57P03', 'the database system is starting up'),
     coded('08006'),
     new Error('Connection terminated unexpectedly'),
+    new Error('Query runner already released. Cannot run queries anymore.'),
+    coded('25P03', 'terminating connection due to idle-in-transaction timeout'),
     Object.assign(new Error('query failed'), { driverError: coded('57P01') }),
     new Error('wrapped', { cause: coded('ECONNRESET') }),
     new AggregateError([coded('ECONNREFUSED'), coded('ECONNREFUSED')]),

@@ -7,12 +7,12 @@ import type { Log } from './log.ts';
 const FIRST_WAIT_MS = 100;
 const LONGEST_WAIT_MS = 5_000;
 
-/** SQLSTATE classes and codes that mean "not now": connection, shutdown, start-up, too many, deadlock. */
-const SQLSTATES_OF_AN_OUTAGE = /^(08...|57P0[1-5]|53...|40001|40P01)$/;
+/** SQLSTATE classes and codes that mean "not now": connection, shutdown, start-up, too many, deadlock, frozen too long. */
+const SQLSTATES_OF_AN_OUTAGE = /^(08...|57P0[1-5]|53...|40001|40P01|25P03)$/;
 const SOCKET_CODES = new Set(['ECONNREFUSED', 'ECONNRESET', 'EPIPE', 'ETIMEDOUT', 'ENOTFOUND', 'EAI_AGAIN']);
-/** The driver says these without a code. */
+/** The driver and its pool say these without a code; a runner is released early when its connection was lost. */
 const DRIVER_WORDS =
-  /connection terminated|client has encountered a connection error|timeout exceeded when trying to connect|client was closed|not queryable|connection is not established/i;
+  /connection terminated|query runner already released|client has encountered a connection error|timeout exceeded when trying to connect|client was closed|not queryable|connection is not established/i;
 
 /** Whether an error only says that the database cannot be reached now. */
 export function isOutage(error: unknown): boolean {

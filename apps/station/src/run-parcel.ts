@@ -48,21 +48,19 @@ async function letGo(held: HeldParcel, desk: Desk, error: unknown): Promise<void
   const { lease } = held;
   const about = { parcel: lease.parcelId, search: lease.searchId, phase: lease.phase, fault: String(error) };
   try {
-    if (held.lost || error instanceof FencedOff) {
-      desk.log.info(about, 'the parcel is not ours any more');
+    if (held.lost) throw new FencedOff('the parcel was lost while it ran');
+    if (error instanceof FencedOff) throw error;
+    if (isOutage(error)) {
+      desk.log.warn(about, 'the database stayed away; the parcel goes on from its last checkpoint');
     } else if (error instanceof Ended) {
       await giveBack(held, desk);
-    } else if (isOutage(error)) {
-      desk.log.warn(about, 'the database stayed away; the parcel goes on from its last checkpoint');
     } else {
       desk.log.error(about, 'the parcel ended with a fault');
       await crash(held, desk, error instanceof Error ? error.message : String(error));
     }
   } catch (second) {
-    if (!(second instanceof FencedOff))
-      desk.log.error(
-        { ...about, second: String(second) },
-        'the parcel could not be let go; the sweep will take it back',
-      );
+    if (second instanceof FencedOff) desk.log.info(about, 'the parcel is not ours any more');
+    else
+      desk.log.error({ ...about, second: String(second) }, 'the parcel could not be let go; the sweep takes it back');
   }
 }
