@@ -11,10 +11,13 @@ export function giveBack({ lease }: HeldParcel, { work, patience }: Desk): Promi
 
 /** The search stops here, open; it can be extended and goes on where it was. */
 export async function spend(held: HeldParcel, desk: Desk, what: 'budget' | { memoryBytes: number }): Promise<void> {
-  const { lease } = held;
-  const reason = what === 'budget' ? 'its budget of CPU time is used up' : memoryReason(what.memoryBytes);
-  await desk.patience.untilAnswered('a spent budget', () => desk.work.spend(lease.searchId, reason, desk.letters));
-  desk.log.info({ search: lease.searchId, reason }, 'spent');
+  const { searchId } = held.lease;
+  const budget = what === 'budget';
+  const reason = budget ? 'its budget of CPU time is used up' : memoryReason(what.memoryBytes);
+  const spent = await desk.patience.untilAnswered('a spent budget', () =>
+    desk.work.spend(searchId, reason, desk.letters, budget),
+  );
+  if (spent) desk.log.info({ search: searchId, reason }, 'spent');
 }
 
 function memoryReason(bytes: number): string {

@@ -20,10 +20,8 @@ export async function runParcel(held: HeldParcel, desk: Desk): Promise<void> {
 
 async function run(held: HeldParcel, desk: Desk): Promise<void> {
   const { lease } = held;
-  if (lease.budgetLeftMs !== null && lease.budgetLeftMs <= 0) {
-    await spend(held, desk, 'budget');
-    return giveBack(held, desk);
-  }
+  // handed out only so that somebody ends the search; the store takes the parcel back with it
+  if (lease.budgetLeftMs !== null && lease.budgetLeftMs <= 0) return spend(held, desk, 'budget');
   switch (lease.phase) {
     case 'choosing':
       return choose(held, desk);
