@@ -57,7 +57,9 @@ function canonical(rows: readonly (readonly number[])[], n: number): string {
 }
 
 function unimodular(next: (below: number) => number, size: number, steps: number): BigMatrix {
-  const u = Array.from({ length: size }, (_, i) => Array.from({ length: size }, (_, j) => (i === j ? 1n : 0n)));
+  const u: bigint[][] = Array.from({ length: size }, (_, i) =>
+    Array.from({ length: size }, (_, j) => (i === j ? 1n : 0n)),
+  );
   for (let k = 0; k < steps && size > 1; k += 1) {
     const i = next(size);
     const j = (i + 1 + next(size - 1)) % size;

@@ -1,15 +1,12 @@
 /** Worked examples of the conventions, and refusals with their places. */
 import { describe, expect, it } from 'vitest';
 import {
-  arithmeticGround,
   buildLattice,
   definiteness,
   discriminantGroup,
   hirzebruchJung,
-  readPasted,
   readSourceText,
   reducedBasis,
-  sourceLabel,
   SourceFault,
   type Source,
 } from './index.ts';
@@ -351,103 +348,5 @@ describe('refusals name place, expectation and finding', () => {
     const found = fault(source);
     expect(found.path).toBe(path);
     expect(found.message).toContain(text);
-  });
-});
-
-describe('arithmetic grounds', () => {
-  const lattice = (text: string) => buildLattice(readSourceText(text));
-  it('17/5 fails in Z^3 by its determinant, in Z^4 at 2 and 17, not in Z^5', () => {
-    expect(arithmeticGround(lattice('17/5'), 2)).toEqual({ ground: 'dimension' });
-    expect(arithmeticGround(lattice('17/5'), 3)).toEqual({ ground: 'determinant' });
-    expect(arithmeticGround(lattice('17/5'), 4)).toEqual({ ground: 'hilbert', primes: ['2', '17'] });
-    expect(arithmeticGround(lattice('17/5'), 5)).toBeNull();
-  });
-
-  it('figure-eight: n = 2 by the determinant, n = 3 at 2 and 5', () => {
-    const eight = buildLattice({
-      kind: 'matrix',
-      rows: [
-        [2, -1],
-        [-1, 3],
-      ],
-    });
-    expect(arithmeticGround(eight, 2)).toEqual({ ground: 'determinant' });
-    expect(arithmeticGround(eight, 3)).toEqual({ ground: 'hilbert', primes: ['2', '5'] });
-    expect(arithmeticGround(eight, 4)).toBeNull();
-  });
-
-  // Legendre: 7 mod 8 is no sum of three squares; I_{r−1} ⊕ ⟨7⟩ needs r + 3 (Mordell 1930, Ko 1937)
-  it('⟨7⟩ fails in Z^3, and I_2 ⊕ ⟨7⟩ in Z^5', () => {
-    expect(arithmeticGround(buildLattice({ kind: 'matrix', rows: [[7]] }), 3)?.ground).toBe('hilbert');
-    expect(
-      arithmeticGround(
-        buildLattice({
-          kind: 'matrix',
-          rows: [
-            [1, 0, 0],
-            [0, 1, 0],
-            [0, 0, 7],
-          ],
-        }),
-        5,
-      )?.ground,
-    ).toBe('hilbert');
-    expect(
-      arithmeticGround(
-        buildLattice({
-          kind: 'matrix',
-          rows: [
-            [1, 0, 0],
-            [0, 1, 0],
-            [0, 0, 7],
-          ],
-        }),
-        6,
-      ),
-    ).toBeNull();
-  });
-});
-
-describe('reading what people paste', () => {
-  const a2 = [
-    [2, -1],
-    [-1, 2],
-  ];
-  it.each([
-    ['spaces', '2 -1\n-1 2'],
-    ['commas', '2, -1\n-1, 2'],
-    ['brackets', '[[2,-1],[-1,2]]'],
-    ['braces', '{{2, -1}, {-1, 2}}'],
-    ['semicolons', '[2 -1; -1 2]'],
-    ['CSV', '"2","-1"\r\n"-1","2"\r\n'],
-    ['LaTeX', '\\begin{pmatrix} 2 & -1 \\\\ -1 & 2 \\end{pmatrix}'],
-    ['LaTeX array', '$\\left[\\begin{array}{cc} 2 & -1 \\\\ -1 & 2 \\end{array}\\right]$'],
-    ['true minus', '2 −1\n−1 2'],
-    ['one line', '2 -1 -1 2'],
-    ['tabs', '2\t-1\n-1\t2\n'],
-  ])('%s', (_name, text) => {
-    expect(readPasted(text).rows).toEqual(a2);
-  });
-
-  it('names row and entry of what is no integer', () => {
-    expect(() => readPasted('2 -1\n-1 1.5')).toThrow(/row 2, entry 2.*1\.5/);
-  });
-
-  it.each([
-    ['17/5', '17/5'],
-    ['P(3, 5, -7)', 'P(3, 5, −7)'],
-    ['M(2/5, 3/7, -4/3)', 'M(2/5, 3/7, −4/3)'],
-    ['[4, 2, 3]', 'tree, 3 vertices'],
-    ['E6', 'tree, 6 vertices'],
-    ['star -2: 3/2, 5/4, 7/1', 'star −2; 2/3, 4/5, 1/7'],
-    ['2 -1; -1 2', 'matrix 2 × 2'],
-  ])('reads %s', (text, label) => {
-    expect(sourceLabel(readSourceText(text))).toBe(label);
-  });
-
-  it('reads a list of weights as a chain', () => {
-    expect(weights(readSourceText('[4, 2, 3]'))).toEqual([-4, -2, -3]);
-    expect(buildLattice(readSourceText('E7')).determinant).toBe(2n);
-    expect(buildLattice(readSourceText('D6')).determinant).toBe(4n);
   });
 });
