@@ -49,5 +49,5 @@ export async function signInBy(
   await page.getByLabel('E-mail').fill(who.email);
   await page.getByLabel('Password').fill(who.password);
   await page.getByRole('button', { name: 'Sign in' }).click();
-  await page.getByRole('link', { name: /^Pool/ }).first().waitFor();
+  await page.waitForURL(/\/studies/);
 }

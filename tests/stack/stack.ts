@@ -26,6 +26,7 @@ export interface Stack {
   readonly letters: string;
   readonly databaseUrl: string;
   readonly schema: string;
+  readonly serverPid: number;
   /** Lines that the server and the stations wrote, for a failing test. */
   readonly log: readonly string[];
   startStation(name: string, workers: number, env?: Readonly<Record<string, string>>): Promise<StationProcess>;
@@ -131,6 +132,7 @@ export async function startStack(
     url,
     letters,
     log,
+    serverPid: server.pid!,
     databaseUrl: database.databaseUrl,
     schema: database.schema,
     async startStation(name, workers, more = {}) {
