@@ -3,8 +3,9 @@ import { defineStore } from 'pinia';
 import { computed, ref } from 'vue';
 import type { Person } from '@palmette/contracts';
 import { whenSignedOut } from '../api/client.ts';
-import { ApiError } from '../api/errors.ts';
+import { ApiError, UnreachableError } from '../api/errors.ts';
 import * as api from '../api/session.ts';
+import { useAppearance } from './appearance.ts';
 
 export const useSession = defineStore('session', () => {
   const person = ref<Person | null>(null);
@@ -41,6 +42,17 @@ export const useSession = defineStore('session', () => {
     person.value = (await api.signIn(email, password)).person;
     known.value = true;
     ended.value = false;
+    await adoptAppearance();
+  }
+
+  /** Light or dark as it was chosen on another machine. */
+  async function adoptAppearance(): Promise<void> {
+    try {
+      useAppearance().choice = (await api.getAccount()).appearance;
+    } catch (error) {
+      // Nobody is kept out because of a colour.
+      if (!(error instanceof ApiError) && !(error instanceof UnreachableError)) throw error;
+    }
   }
 
   async function signOut(): Promise<void> {
