@@ -24,7 +24,11 @@ export default ts.config(
       '@typescript-eslint/no-non-null-assertion': 'off',
       'no-restricted-syntax': [
         'error',
-        { selector: ':matches(ForStatement, ForOfStatement, WhileStatement) AwaitExpression > CallExpression > MemberExpression.callee[property.name="save"]', message: 'save in a loop is slow: insert in batches' },
+        {
+          selector:
+            ':matches(ForStatement, ForOfStatement, WhileStatement) AwaitExpression > CallExpression > MemberExpression.callee[property.name="save"]',
+          message: 'save in a loop is slow: insert in batches',
+        },
       ],
     },
   },

@@ -1,7 +1,8 @@
 /** Bundles the Node programs (server, station, their threads, the command line) and builds the client. */
 import { build } from 'esbuild';
 import { execFileSync } from 'node:child_process';
-import { existsSync } from 'node:fs';
+import { readdirSync } from 'node:fs';
+import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 
 const root = fileURLToPath(new URL('..', import.meta.url));
@@ -18,7 +19,16 @@ const shared = {
   tsconfigRaw: { compilerOptions: { experimentalDecorators: true, useDefineForClassFields: false } },
 };
 
-/** Packages of the registry stay outside the bundles, except for the command line, which has to start fast. */
+/** Our own workspaces are bundled; packages of the registry stay outside. */
+const outside = {
+  name: 'registry packages stay outside',
+  setup: (bundler) =>
+    bundler.onResolve({ filter: /^[^./]/ }, ({ path, kind }) =>
+      kind === 'entry-point' || path.startsWith('@palmette/') ? undefined : { path, external: true },
+    ),
+};
+
+/** The command line takes its packages in, so that it starts fast. */
 export async function buildCli(outdir) {
   await build({
     ...shared,
@@ -32,29 +42,19 @@ export async function buildCli(outdir) {
 }
 
 async function buildPrograms() {
-  for (const app of ['server', 'station']) {
-    const threads = { server: 'apps/server/src/threads', station: '' }[app];
-    const entryPoints = { main: `apps/${app}/src/main.ts` };
-    if (app === 'station') entryPoints.thread = 'packages/threads/src/thread.ts';
-    if (threads) {
-      const { readdirSync } = await import('node:fs');
-      if (existsSync(`${root}${threads}`))
-        for (const f of readdirSync(`${root}${threads}`))
-          if (f.endsWith('.ts') && !f.endsWith('.test.ts')) entryPoints[f.slice(0, -3)] = `${threads}/${f}`;
-    }
-    await build({ ...shared, entryPoints, outdir: `apps/${app}/dist`, packages: 'external', alias: await ours() });
+  const serverThreads = readdirSync(join(root, 'apps/server/src/threads')).filter((file) => !file.endsWith('.test.ts'));
+  const server = {
+    main: 'apps/server/src/main.ts',
+    ...Object.fromEntries(serverThreads.map((file) => [file.replace('.ts', ''), `apps/server/src/threads/${file}`])),
+  };
+  const station = { main: 'apps/station/src/main.ts', thread: 'packages/threads/src/thread.ts' };
+  for (const [app, entryPoints] of Object.entries({ server, station })) {
+    await build({ ...shared, entryPoints, outdir: `apps/${app}/dist`, plugins: [outside] });
   }
-}
-
-/** `packages: external` would leave our own workspaces out too; these are bundled. */
-async function ours() {
-  const { readdirSync } = await import('node:fs');
-  return Object.fromEntries(
-    readdirSync(`${root}packages`).map((name) => [`@palmette/${name}`, `${root}packages/${name}/src/index.ts`]),
-  );
 }
 
 if (process.argv[1] === fileURLToPath(import.meta.url)) {
   await buildPrograms();
-  execFileSync('npx', ['vite', 'build', 'apps/web', '--logLevel', 'warn'], { cwd: root, stdio: 'inherit' });
+  if (!process.argv.includes('--no-client'))
+    execFileSync('npx', ['vite', 'build', 'apps/web', '--logLevel', 'warn'], { cwd: root, stdio: 'inherit' });
 }
