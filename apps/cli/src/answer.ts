@@ -52,7 +52,7 @@ async function answerLines(file: string): Promise<number> {
   };
   try {
     for await (const document of readLines(file)) {
-      flying.push(threads.run({ kind: 'answer', document }).end);
+      flying.push(threads.run({ kind: 'answer', document, oneLine: true }).end);
       if (flying.length >= IN_FLIGHT * threads.size) await land();
     }
     while (flying.length > 0) await land();

@@ -94,7 +94,11 @@ export class CertificateWriter {
   private records = 0;
   private totalBytes = 0;
 
-  constructor(private readonly sha256: Sha256) {}
+  /** @param oneObject keep one object on one line whatever its size */
+  constructor(
+    private readonly sha256: Sha256,
+    private readonly oneObject = false,
+  ) {}
 
   add(record: EmbeddingRecord): void {
     const line = embeddingText(record);
@@ -116,7 +120,7 @@ export class CertificateWriter {
   /** The file's bytes, to be written one after the other. */
   finish(parts: CertificateParts): Uint8Array[] {
     this.closeChunk();
-    const large = this.records > ONE_OBJECT_EMBEDDINGS || this.totalBytes > ONE_OBJECT_BYTES;
+    const large = !this.oneObject && (this.records > ONE_OBJECT_EMBEDDINGS || this.totalBytes > ONE_OBJECT_BYTES);
     const embeddings = large
       ? JSON.stringify({
           chunks: this.chunks.map((c): ChunkEntry => ({

@@ -15,9 +15,9 @@ export class CheckFailed extends Error {
   override readonly name = 'CheckFailed';
 }
 
-export function answerAlone(document: string): AnswerEnd {
+export function answerAlone(document: string, options: { readonly oneLine?: boolean } = {}): AnswerEnd {
   try {
-    return answerUnderstood(understand(document));
+    return answerUnderstood(understand(document, options));
   } catch (error) {
     if (error instanceof Refusal) return refused(error);
     throw error;

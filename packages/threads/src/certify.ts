@@ -110,7 +110,7 @@ function write(
   complete: boolean,
   evidence: { exclusions: Exclusion[]; list: RowsTree | null },
 ): Omit<Certified, 'facts'> {
-  const writer = new CertificateWriter(sha256);
+  const writer = new CertificateWriter(sha256, u.oneLine);
   const tests = testResults(u, records, complete, claim.dimension);
   records.forEach((record, i) => writer.add({ ...record, tests: tests.each[i] ?? {} }));
   const certificate = writer.finish({

@@ -74,6 +74,8 @@ export interface ConcludeJob {
 export interface AnswerJob {
   readonly kind: 'answer';
   readonly document: string;
+  /** The certificate is one line whatever its size. */
+  readonly oneLine: boolean;
 }
 
 export type Job = ChooseJob | ListJob | AssembleJob | CheckJob | ConcludeJob | AnswerJob;

@@ -55,7 +55,7 @@ function run(job: Job, talk: ThreadTalk): JobEnd<Job> {
     case 'conclude':
       return conclude(job);
     case 'answer':
-      return answerAlone(job.document);
+      return answerAlone(job.document, job);
   }
 }
 

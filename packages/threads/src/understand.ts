@@ -17,6 +17,8 @@ export interface Understood {
   readonly reduced: ReturnType<typeof reducedBasis>;
   /** Why the lattice cannot embed in Z^n by arithmetic alone, or null. */
   readonly arithmetic: (n: number) => ArithmeticGround | null;
+  /** The certificate is one line whatever its size. */
+  readonly oneLine: boolean;
   /** 32 bits of the canonical question's hash: seeds every probe. */
   readonly seed: number;
 }
@@ -27,7 +29,7 @@ export const sha256 = (bytes: Uint8Array | string): string => createHash('sha256
  * Reads and builds.
  * @throws Refusal with the path of the field, what was expected and what was found.
  */
-export function understand(document: string): Understood {
+export function understand(document: string, options: { readonly oneLine?: boolean } = {}): Understood {
   const question = readQuestion(document);
   const lattice = built(question);
   const canonical = canonicalQuestion(question);
@@ -41,6 +43,7 @@ export function understand(document: string): Understood {
       if (!known.has(n)) known.set(n, arithmeticGround(lattice, n));
       return known.get(n)!;
     },
+    oneLine: options.oneLine === true,
     seed: Number.parseInt(sha256(JSON.stringify(canonical)).slice(0, 8), 16),
   };
 }
