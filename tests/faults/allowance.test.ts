@@ -19,9 +19,9 @@ it('two searches of one person capped at one worker never run at once, while ano
   const capped = await pool.person('capped', 1);
   const free = await pool.person('free', 8);
   await Promise.all([pool.station('east', 2), pool.station('west', 2)]);
-  const first = await pool.ask(capped, 6_000, 'spin 20000');
-  const second = await pool.ask(capped, 6_000, 'spin 20000');
-  const others = [await pool.ask(free, 10_000, 'spin 20000'), await pool.ask(free, 10_000, 'spin 20000')];
+  const first = await pool.ask(capped, 6_000, 'spin 150');
+  const second = await pool.ask(capped, 6_000, 'spin 150');
+  const others = [await pool.ask(free, 10_000, 'spin 150'), await pool.ask(free, 10_000, 'spin 150')];
 
   const seen = { capped: 0, free: 0, samples: 0, stations: new Set<string>() };
   await until('all four are settled', async () => {

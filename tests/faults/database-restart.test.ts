@@ -41,7 +41,7 @@ afterAll(async () => {
 it('a restart of the database in the middle of a search costs nothing but time', async () => {
   const ada = await pool.person('ada');
   const station = await pool.station('patient', 2, { LEASE_SECONDS: '30' });
-  const { id, document } = await pool.ask(ada, 16_000, 'spin 20000');
+  const { id, document } = await pool.ask(ada, 16_000, 'spin 150');
   const nodesOf = async () =>
     (await pool.parcels(id)).reduce((sum, p) => sum + (p.phase === 'listing' ? Number(p.nodes) : 0), 0);
   await until('it has got somewhere', async () => (await nodesOf()) > 0);

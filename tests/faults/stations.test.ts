@@ -41,7 +41,7 @@ const inHand = async (id: string) =>
 
 describe('kill -9', () => {
   it('in the middle of a parcel: another station goes on from the checkpoint to the same certificate', async () => {
-    const { id, document } = await pool.ask(ada, N, 'lopsided; spin 20000');
+    const { id, document } = await pool.ask(ada, N, 'lopsided; spin 150');
     const first = await start('killed', 2);
     await until('a parcel has a checkpoint', () => inHand(id));
     first.signal('SIGKILL');
@@ -60,7 +60,7 @@ describe('kill -9', () => {
 
 describe('a station that is frozen and wakes up', () => {
   it('cannot write: its parcel has gone on without it', async () => {
-    const { id, document } = await pool.ask(ada, N, 'lopsided; spin 20000');
+    const { id, document } = await pool.ask(ada, N, 'lopsided; spin 150');
     const frozen = await start('frozen', 1);
     const held = await until('a parcel has a checkpoint', () => inHand(id));
     frozen.signal('SIGSTOP');
@@ -81,8 +81,8 @@ describe('a station that is frozen and wakes up', () => {
 describe('a parcel that kills its thread', () => {
   it('is tried again alone and is broken with a reason; other searches go on', async () => {
     await start('tough', 2);
-    const bad = await pool.ask(ada, 6_000, 'crash at 4500; spin 1000');
-    const good = await pool.ask(ada, 10_000, 'spin 10000');
+    const bad = await pool.ask(ada, 6_000, 'crash at 4500; spin 10');
+    const good = await pool.ask(ada, 10_000, 'spin 80');
     const seen = await pool.reaches(ada, bad.id, ['broken', 'settled']);
     expect(seen).toMatchObject({ state: 'broken', verdict: 'open' });
     expect(seen.reason).toContain('ended with code 7');

@@ -92,7 +92,7 @@ describe('a letter', () => {
   it('about a spent search says first that it is not a no', async () => {
     const { folder } = await mail('spent');
     await station('writer');
-    const { id } = await pool.ask(ada, 60_000, 'spin 20000', 100);
+    const { id } = await pool.ask(ada, 60_000, 'spin 150', 100);
     await until('it is sent', isIn(id, 'sent'));
     const [letter] = await keptLetters(folder);
     expect(letter!.subject).toBe('Open, budget used up: 60000/1');

@@ -53,7 +53,7 @@ describe('a search', () => {
   });
 
   it('of scope one ends with the first witness; the other parcels are not needed', async () => {
-    const { id, document } = await pool.ask(ada, 60_000, 'one at 100; spin 4000');
+    const { id, document } = await pool.ask(ada, 60_000, 'one at 100; spin 30');
     await pool.reaches(ada, id, ['settled', 'broken']);
     expect(await pool.certificate(id)).toBe(rightCertificate(document));
     expect((await pool.parcels(id)).some((p) => p.state === 'unneeded')).toBe(true);
@@ -75,7 +75,7 @@ describe('a search', () => {
   });
 
   it('has a long parcel cut again while a worker is idle', async () => {
-    const { id, document } = await pool.ask(ada, 3_000, 'lopsided; spin 120000');
+    const { id, document } = await pool.ask(ada, 3_000, 'lopsided; spin 1500');
     await pool.reaches(ada, id, ['settled', 'broken'], 90);
     expect(await pool.certificate(id)).toBe(rightCertificate(document));
     const listing = (await pool.parcels(id)).filter((p) => p.phase === 'listing');
@@ -86,7 +86,7 @@ describe('a search', () => {
 
 describe('a short question', () => {
   it('is answered while every worker is busy with a long search, which goes on from where it was', async () => {
-    const long = await pool.ask(ada, 100_000_000, 'spin 2000');
+    const long = await pool.ask(ada, 100_000_000, 'spin 15');
     await until('both workers are busy, past the first turn', async () => {
       const parcels = await pool.parcels(long.id);
       const cpuMs = parcels.reduce((sum, p) => sum + Number(p.cpu_ms), 0);
@@ -121,7 +121,7 @@ describe('its owner', () => {
   });
 
   it('holds and resumes it; it goes on from where it was', async () => {
-    const { id, document } = await pool.ask(ada, 20_000, 'spin 15000');
+    const { id, document } = await pool.ask(ada, 20_000, 'spin 120');
     await until('it has got somewhere', async () => (await pool.parcels(id)).some((p) => Number(p.nodes) > 0));
     await pool.store.questions.hold(ada, id);
     await until(
@@ -140,7 +140,7 @@ describe('its owner', () => {
   });
 
   it('extends a spent budget, and it goes on to the same certificate', async () => {
-    const { id, document } = await pool.ask(ada, 20_000, 'spin 15000', 500);
+    const { id, document } = await pool.ask(ada, 20_000, 'spin 120', 500);
     const spent = await pool.reaches(ada, id, ['spent', 'settled', 'broken']);
     expect(spent).toMatchObject({ state: 'spent', verdict: 'open', certificate: null });
     expect(spent.reason).toContain('budget');
@@ -156,7 +156,7 @@ describe('its owner', () => {
 describe('a station', () => {
   it('finishes and stands by when the admin says so, and takes work again', async () => {
     const admin = { id: ada.id, role: 'admin' as const };
-    const { id } = await pool.ask(ada, 20_000, 'spin 20000');
+    const { id } = await pool.ask(ada, 20_000, 'spin 150');
     await until('it runs', async () => (await pool.parcels(id)).some((p) => p.state === 'leased'));
     const [row] = await pool.store.pool.stations();
     await pool.store.pool.standBy(admin, row!.id, true);
@@ -170,7 +170,7 @@ describe('a station', () => {
   });
 
   it('leaves nothing leased when it is told to stop, and counts no crash', async () => {
-    const { id, document } = await pool.ask(ada, 15_000, 'spin 20000');
+    const { id, document } = await pool.ask(ada, 15_000, 'spin 150');
     await until('it runs', async () => (await pool.parcels(id)).some((p) => Number(p.nodes) > 0));
     station.signal('SIGTERM');
     expect(await station.gone()).toBe(0);

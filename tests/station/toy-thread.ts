@@ -190,7 +190,6 @@ function count(
   return end('done');
 }
 
-function spin(turns: number): void {
-  for (let k = 0; k < turns; k += 1) Atomics.load(IDLE, 0);
+function spin(microseconds: number): void {
+  for (const end = performance.now() + microseconds / 1000; performance.now() < end;);
 }
-const IDLE = new Int32Array(new SharedArrayBuffer(4));

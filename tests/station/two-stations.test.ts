@@ -18,7 +18,7 @@ afterAll(async () => {
 it('share one long parcel: the one that holds it cuts it for the worker that is idle in the other', async () => {
   const ada = await pool.person('ada');
   const stations = await Promise.all([pool.station('east', 1), pool.station('west', 1)]);
-  const { id, document } = await pool.ask(ada, 3_000, 'lopsided; spin 120000');
+  const { id, document } = await pool.ask(ada, 3_000, 'lopsided; spin 1500');
   await pool.reaches(ada, id, ['settled', 'broken']);
   expect(await pool.certificate(id)).toBe(rightCertificate(document));
   expect(stations.some(({ log }) => log.some((line) => line.includes('"msg":"cut"')))).toBe(true);
