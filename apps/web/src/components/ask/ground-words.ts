@@ -55,7 +55,8 @@ export function quickInWords(quick: Exclude<QuickLook, { kind: 'none' }>): Said 
       };
     }
     const where = quick.dimension === null ? 'some Z^n' : space(quick.dimension);
-    const ways = quick.complete ? `, in ${plural(quick.orbits, 'way')} up to symmetry` : '';
+    const count = quick.orbits === '1' ? 'one way' : plural(quick.orbits, 'way');
+    const ways = quick.complete ? `, in exactly ${count} up to symmetry` : '';
     return {
       heading: `It seems to embed in ${where}${ways}.`,
       lead: `A quick look in this browser, ${looked}. It is not certified.`,

@@ -36,6 +36,8 @@ export interface QuestionDraft {
   takeQuestion(question: Question): void;
   /** @throws Refusal if a limit of the whole document is passed */
   document(): Question;
+  /** Empties the first blank and the forms under it. */
+  clearSource(): void;
   startAfresh(): void;
 }
 
@@ -120,6 +122,9 @@ export function useQuestionDraft(): QuestionDraft {
         tests: rest.tests,
         ...(seconds === undefined || seconds === null ? {} : { budget: { cpuSeconds: seconds } }),
       });
+    },
+    clearSource() {
+      Object.assign(source, emptyDraft());
     },
     startAfresh() {
       Object.assign(source, emptyDraft());
