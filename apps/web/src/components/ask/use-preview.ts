@@ -17,6 +17,8 @@ export interface Preview {
   readonly arithmetic: ShallowRef<ArithmeticReading | null>;
   readonly quick: ShallowRef<QuickLook | null>;
   readonly busy: Ref<boolean>;
+  /** The reading that stands is of what was typed before. */
+  readonly stale: Ref<boolean>;
 }
 
 /** Keys follow each other faster than this. */
@@ -30,6 +32,7 @@ export function usePreview(order: () => PreviewOrder | null): Preview {
   const arithmetic = shallowRef<ArithmeticReading | null>(null);
   const quick = shallowRef<QuickLook | null>(null);
   const busy = ref(false);
+  const stale = ref(false);
   let worker: Worker | null = null;
   let timer: ReturnType<typeof setTimeout> | undefined;
 
@@ -46,9 +49,11 @@ export function usePreview(order: () => PreviewOrder | null): Preview {
       case 'fault':
         fault.value = report.fault;
         reading.value = null;
+        stale.value = false;
         break;
       case 'read':
         reading.value = report.reading;
+        stale.value = false;
         break;
       case 'group':
         divisors.value = report.divisors;
@@ -85,6 +90,7 @@ export function usePreview(order: () => PreviewOrder | null): Preview {
       divisors.value = null;
       arithmetic.value = null;
       quick.value = null;
+      stale.value = reading.value !== null && text !== 'null';
       if (text === 'null') {
         reading.value = null;
         return;
@@ -99,5 +105,5 @@ export function usePreview(order: () => PreviewOrder | null): Preview {
     stop();
     worker?.terminate();
   });
-  return { reading, fault, divisors, arithmetic, quick, busy };
+  return { reading, fault, divisors, arithmetic, quick, busy, stale };
 }
