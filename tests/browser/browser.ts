@@ -49,5 +49,5 @@ export async function signInBy(
   await page.getByLabel('E-mail').fill(who.email);
   await page.getByLabel('Password').fill(who.password);
   await page.getByRole('button', { name: 'Sign in' }).click();
-  await page.waitForURL(/\/studies/);
+  await page.waitForURL((address) => address.pathname.startsWith('/studies'));
 }
