@@ -73,7 +73,7 @@ describe('kill -9 in the middle', () => {
       .waitFor({ timeout: 60_000 });
     await until('some parcels are done', async () => (await view(admin, id)).progress.parcels.done >= 4, 90);
     const before = await view(admin, id);
-    expect(before.state).toBe('searching');
+    expect(['searching', 'waiting']).toContain(before.state);
     await first.kill();
     await stack.startStation('second', 2);
     await until('it is settled', async () => (await view(admin, id)).state === 'settled', 240);
@@ -142,7 +142,8 @@ describe('the cap of one worker', () => {
       'both have run for a while',
       async () => {
         const [a, b, c] = await Promise.all([view(bela.api, one.id), view(bela.api, two.id), view(cato.api, other.id)]);
-        most = Math.max(most, a.progress.workers + b.progress.workers);
+        // one look at one instant: two looks at two searches would count a change of turns twice
+        most = Math.max(most, (await bela.api.get<{ yours: { busy: number } }>('/pool')).yours.busy);
         catoRan ||= c.progress.workers > 0 || c.state === 'settled';
         samples += 1;
         return samples >= 60 && a.cpuSeconds > 1 && b.cpuSeconds > 1 && catoRan;
