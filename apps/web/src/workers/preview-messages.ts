@@ -74,7 +74,8 @@ export type QuickLook =
     }
   | {
       readonly kind: 'unfinished';
-      readonly dimension: number;
+      /** Null for any n. */
+      readonly dimension: number | null;
       readonly orbits: string;
       readonly nodes: string;
       readonly ms: number;

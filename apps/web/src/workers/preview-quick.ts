@@ -91,7 +91,7 @@ export function quickLook(lattice: Lattice, order: PreviewOrder, now: () => numb
       const ms = now() - began;
       return {
         kind: 'unfinished',
-        dimension: stage.dimension,
+        dimension: 'any' in order.target ? null : stage.dimension,
         orbits: run.orbits.toString(),
         nodes: nodes.toString(),
         ms,
@@ -110,7 +110,8 @@ type Step = Extract<ReturnType<typeof nextStep>, { readonly stage: unknown }>;
 function secondsOf(plan: Plan, stage: Step['stage'], nodes: bigint, ms: number) {
   const { mean, low, high } = estimate(plan, stage, { probes: PROBES, seed: SEED, steps: PROBE_STEPS });
   const rate = (Number(nodes) / Math.max(1, ms)) * 1000;
-  if (!Number.isFinite(mean) || !Number.isFinite(high) || rate <= 0) return null;
+  // fewer nodes than were listed already: the probes missed most of the tree
+  if (!Number.isFinite(high) || rate <= 0 || mean <= Number(nodes)) return null;
   const least = Math.max(low, Number(nodes));
   return { low: least / rate, likely: Math.max(mean, least) / rate, high: Math.max(high, least) / rate };
 }

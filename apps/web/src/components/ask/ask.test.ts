@@ -74,6 +74,17 @@ describe('words', () => {
     });
     expect(open.lead).toContain('says nothing about the answer');
     expect(open.lead).toMatch(/8 times in 10/);
+    const far = quickInWords({
+      kind: 'unfinished',
+      dimension: null,
+      orbits: '0',
+      nodes: '1284',
+      ms: 200,
+      seconds: { low: 0.4, likely: 1e22, high: 1e26 },
+      first: null,
+    });
+    expect(far.heading).toBe('It needs a search.');
+    expect(far.lead).toMatch(/from under 1 s to more than 100 years/);
   });
 
   it('of a group join equal summands', () => {

@@ -67,13 +67,19 @@ export function quickInWords(quick: Exclude<QuickLook, { kind: 'none' }>): Said 
       ? 'It found nothing so far, which says nothing about the answer'
       : `It found ${plural(quick.orbits, 'embedding')} so far, and others may follow`;
   return {
-    heading: `${capital(space(quick.dimension))} needs a search.`,
+    heading: quick.dimension === null ? 'It needs a search.' : `${space(quick.dimension)} needs a search.`,
     lead: `A quick look in this browser listed ${countInWords(quick.nodes)} nodes. ${found}. ${timeInWords(quick.seconds)}`,
   };
 }
 
+/** Seconds in 100 years. */
+const OUT_OF_REACH = 100 * 365 * 86_400;
+
 function timeInWords(seconds: { readonly low: number; readonly likely: number; readonly high: number } | null): string {
   if (seconds === null) return 'How long the whole takes cannot be told yet.';
+  if (seconds.low > OUT_OF_REACH) return 'By its estimate the whole is out of reach: more than 100 years of CPU time.';
+  if (seconds.high > OUT_OF_REACH)
+    return `How long the whole takes cannot be told: from ${roughSpanInWords(seconds.low)} to more than 100 years of CPU time (8 times in 10).`;
   if (seconds.high < 1) return 'The whole should take under a second.';
   return `The whole should take about ${roughSpanInWords(seconds.likely)} of CPU time (${spreadInWords(seconds)}).`;
 }
