@@ -20,6 +20,8 @@ import { fixedDimension, understand, type Understood } from './understand.ts';
 
 /** Work between two looks at the clock. */
 const SLICE_NODES = 2_000;
+/** Nodes above which a search becomes parcels even if it was quick: its check is to run in parcels too. */
+const QUICK_NODES = 20_000n;
 /** Pieces of a first cover: enough that a few long ones can be cut again, few enough to draw. */
 const COVER_PARCELS = 48;
 const ESTIMATE_PROBES = 200;
@@ -122,7 +124,7 @@ function runQuickly(
     const run = openRun(plan!, step.stage, { from: [], to: null });
     let end = run.advance(SLICE_NODES);
     while (end === 'more') {
-      if (meter.ms > quickCpuMs) return { kind: 'long', stage: step.stage, results };
+      if (meter.ms > quickCpuMs || run.nodes > QUICK_NODES) return { kind: 'long', stage: step.stage, results };
       end = run.advance(SLICE_NODES);
     }
     results.push(stageResult(step.stage, BigInt(run.nodes), BigInt(run.orbits), end === 'done'));
