@@ -10,8 +10,8 @@ import { readClaim, readQuestion, type Claim } from './question.ts';
 import { listOf, NotChecked, objectOf, Rejection, stringIntegerOf, type Json } from './reading.ts';
 import { openCheckRun, type CheckTree } from './tree.ts';
 
-/** Raised when what the checker verifies, or its last line, changes. */
-export const CHECKER_REVISION = 1;
+/** Raised when what the checker verifies, its last line or its checkpoints change. */
+export const CHECKER_REVISION = 2;
 
 export interface Outcome {
   readonly verdict: 'VERIFIED' | 'REJECTED' | 'NOT CHECKED';

@@ -1,5 +1,8 @@
-/** The columns of one node of a tree: what is equal up to sign stands once, with its number; zero columns are a number. */
-import type { Int } from './list-children.ts';
+/**
+ * The columns of a node where there are many of them or where numbers are large: what is equal up to sign stands once,
+ * with its number and its nonzero entries; zero columns are a number.
+ */
+import type { Int } from './int-kinds.ts';
 
 export interface Column {
   readonly count: number;
@@ -8,12 +11,12 @@ export interface Column {
   readonly entries: readonly Int[];
 }
 
-export interface NodeColumns {
+export interface SparseNode {
   readonly columns: readonly Column[];
   readonly zeros: number;
 }
 
-/** One way to fill the next row: the nonzero values given to each column's copies, and to zero columns. */
+/** One way to fill the next row: the nonzero values given to each column's copies, and to zero columns, both descending. */
 export interface Filling {
   readonly values: readonly (readonly Int[])[];
   readonly onZeros: readonly Int[];
@@ -22,7 +25,7 @@ export interface Filling {
 const NONE: readonly never[] = [];
 
 /** The node that a filling leads to. */
-export function child(node: NodeColumns, depth: number, filling: Filling): NodeColumns {
+export function sparseChild(node: SparseNode, depth: number, filling: Filling): SparseNode {
   const columns: Column[] = [];
   const addRuns = (values: readonly Int[], rows: readonly number[], entries: readonly Int[]) => {
     for (let i = 0; i < values.length;) {
