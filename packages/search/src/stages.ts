@@ -49,13 +49,12 @@ export type Step = { readonly stage: Stage } | { readonly conclusion: Conclusion
 /** Dimensions above the rank that are tried before an existence tree at the bound is run (Mordell 1930, Ko 1937: rank ≤ 5 needs no more). */
 const TRIED_FIRST = 3;
 
-/** Largest n for which trees are built; the bound of the published interface. */
-const MAX_DIMENSION = 1_000_000;
-
 /** Trace of the working Gram: no embedding has more nonzero columns. */
 export function traceOf(plan: Plan): number {
   const gram = planGram(plan);
   const trace = gram.reduce((sum, row, i) => sum + row[i]!, 0n);
+  if (trace > BigInt(Number.MAX_SAFE_INTEGER))
+    throw new RangeError(`the trace ${trace} is too big for a tree that holds every embedding`);
   return Number(trace);
 }
 
@@ -99,7 +98,7 @@ function least(
   const rank = plan.order.length;
   const trace = traceOf(plan);
   const whole = upTo === undefined || upTo >= trace;
-  const bound = Math.min(upTo ?? trace, trace, MAX_DIMENSION);
+  const bound = Math.min(upTo ?? trace, trace);
   const atBound = results.find((r) => r.dimension === bound);
   const nowhere = (stage: number): Step =>
     whole ? excluded(null, { dimension: null, stage }) : excluded(upTo!, { dimension: upTo!, stage });
