@@ -3,6 +3,8 @@ export { buildLattice, reducedBasis, type Lattice, type ReducedBasis } from './b
 export { hirzebruchJung } from './hirzebruch-jung.ts';
 export { diagramRegions } from './source-diagram.ts';
 export { arithmeticGround, type ArithmeticGround } from './arithmetic-ground.ts';
+export { columnGround, type ColumnGround } from './column-ground.ts';
+export { listAdmissibleColumns, type ColumnListing } from './admissible-columns.ts';
 export { definiteness, discriminantGroup } from './invariants.ts';
 export { readPasted } from './read-pasted.ts';
 export { chainSource, readSourceText, rootLatticeSource } from './read-source-text.ts';
