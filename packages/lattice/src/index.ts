@@ -9,4 +9,4 @@ export { definiteness, discriminantGroup } from './invariants.ts';
 export { readPasted } from './read-pasted.ts';
 export { chainSource, readSourceText, rootLatticeSource } from './read-source-text.ts';
 export { sourceLabel } from './source-label.ts';
-export { testsOnList, type ListedEmbedding, type ListTests, type TestsOnListInput } from './tests-on-list.ts';
+export { TestsOnList, type ListedEmbedding, type ListQuestion } from './tests-on-list.ts';

@@ -7,33 +7,56 @@ import { elementaryDivisors, inverseModulo, modulo, trialFactor } from '@palmett
 import type { Lattice } from './build.ts';
 import type { ListedEmbedding, TestAnswer } from './tests-on-list.ts';
 
-/** Classes of column spaces above which pairs are not tried. */
+/** Classes of column spaces above which pairs are not tried. It bounds the memory too: of a class the first embedding's spaces are kept. */
 const MAX_CLASSES = 1_500;
 
-export function pairAnswer(lattice: Lattice, embeddings: readonly ListedEmbedding[], complete: boolean): TestAnswer {
-  const { primes, rest } = trialFactor(lattice.determinant);
-  if (rest !== 1n) return { undecided: true, reason: 'the determinant could not be factored' };
-  const spaces = embeddings.map((e) => primes.map(({ prime }) => columnSpace(e.rows, prime)));
-  const first = new Map<string, number>();
-  spaces.forEach((space, i) => {
-    const key = JSON.stringify(space, (_, x: unknown) => (typeof x === 'bigint' ? x.toString() : x));
-    if (!first.has(key)) first.set(key, i);
-  });
-  const classes = [...first.values()];
-  if (classes.length > MAX_CLASSES)
-    return { undecided: true, reason: `${classes.length} classes of column spaces, above ${MAX_CLASSES}` };
-  for (const i of classes) {
-    for (const j of classes) {
-      if (j < i) continue;
-      const onto = primes.every(
-        ({ prime }, k) => rankModulo([...spaces[i]![k]!, ...spaces[j]![k]!], prime) === lattice.rank,
-      );
-      if (onto) return { passes: true, witness: [i, j] };
-    }
+/** Takes the embeddings one by one and keeps one of each class. */
+export class PairTest {
+  private readonly primes: readonly bigint[] | null;
+  /** For each class of column spaces the number of its first embedding and its space modulo each prime. */
+  private readonly classes = new Map<string, { readonly first: number; readonly spaces: bigint[][][] }>();
+  private taken = 0;
+  private tooMany = false;
+
+  constructor(private readonly lattice: Lattice) {
+    const { primes, rest } = trialFactor(lattice.determinant);
+    this.primes = rest === 1n ? primes.map(({ prime }) => prime) : null;
   }
-  return complete
-    ? { passes: false }
-    : { undecided: true, reason: 'no pair of the list is onto, and the list is not complete' };
+
+  take({ rows }: ListedEmbedding): void {
+    const no = this.taken;
+    this.taken += 1;
+    if (this.primes === null || this.tooMany) return;
+    const spaces = this.primes.map((prime) => columnSpace(rows, prime));
+    const key = JSON.stringify(spaces, (_, x: unknown) => (typeof x === 'bigint' ? x.toString() : x));
+    if (this.classes.has(key)) return;
+    this.classes.set(key, { first: no, spaces });
+    if (this.classes.size <= MAX_CLASSES) return;
+    this.tooMany = true;
+    this.classes.clear();
+  }
+
+  answer(complete: boolean): TestAnswer {
+    const { primes, lattice } = this;
+    if (primes === null) return { undecided: true, reason: 'the determinant could not be factored' };
+    if (this.tooMany)
+      return {
+        undecided: true,
+        reason: `${this.taken} embeddings have more than ${MAX_CLASSES} classes of column spaces`,
+      };
+    const classes = [...this.classes.values()];
+    for (const [at, one] of classes.entries()) {
+      for (const other of classes.slice(at)) {
+        const onto = primes.every(
+          (prime, k) => rankModulo([...one.spaces[k]!, ...other.spaces[k]!], prime) === lattice.rank,
+        );
+        if (onto) return { passes: true, witness: [one.first, other.first] };
+      }
+    }
+    return complete
+      ? { passes: false }
+      : { undecided: true, reason: 'no pair of the list is onto, and the list is not complete' };
+  }
 }
 
 /** Reduced echelon basis of the span of the columns modulo p. */

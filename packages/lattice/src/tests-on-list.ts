@@ -1,12 +1,12 @@
 /**
- * Tests over a list of embeddings. Each is answered, or said not to apply with the reason, or left undecided with
- * the reason; none is dropped.
+ * Tests over a list of embeddings, taken one by one: the list may be longer than memory. Each is answered, or said not to
+ * apply with the reason, or left undecided with the reason; none is dropped.
  */
 import type { Lattice } from './build.ts';
 import { changemakerAnswer } from './test-changemaker.ts';
 import { complementAnswer, torsionIndex } from './test-complement.ts';
 import { cubiquityAnswer } from './test-cubiquity.ts';
-import { metaboliserAnswer, pairAnswer } from './test-pair.ts';
+import { metaboliserAnswer, PairTest } from './test-pair.ts';
 
 export interface ListedEmbedding {
   /** N rows of the nonzero columns. */
@@ -16,18 +16,17 @@ export interface ListedEmbedding {
 
 export type TestAnswer = { readonly [key: string]: unknown } | string;
 
-export interface TestsOnListInput {
+export interface ListQuestion {
   readonly lattice: Lattice;
   /** Null for target any: each embedding has its own width. */
   readonly dimension: number | null;
-  readonly embeddings: readonly ListedEmbedding[];
-  readonly complete: boolean;
   readonly tests: readonly string[];
 }
 
-export interface ListTests {
-  readonly overall: Record<string, TestAnswer>;
-  readonly each: Record<string, TestAnswer>[];
+/** A test of the list as a whole: sees every embedding once and keeps no more than a bounded part. */
+interface OverList {
+  take(embedding: ListedEmbedding): void;
+  answer(complete: boolean): TestAnswer;
 }
 
 /** What a test of one embedding needs of n, and its answer. */
@@ -43,22 +42,51 @@ const EACH: Readonly<
   changemaker: { excess: 1, answer: changemakerAnswer },
 };
 
-export function testsOnList(input: TestsOnListInput): ListTests {
-  const overall: Record<string, TestAnswer> = {};
-  const each: Record<string, TestAnswer>[] = input.embeddings.map(() => ({}));
-  for (const name of input.tests) {
-    const one = EACH[name];
-    if (one !== undefined) {
-      if (input.embeddings.length === 0) overall[name] = { applies: false, reason: 'there is no embedding' };
-      input.embeddings.forEach((embedding, i) => {
-        each[i]![name] = onOne(input.lattice, embedding, one);
-        if (name === 'complement') each[i]!['index'] = torsionIndex(embedding);
-      });
-    } else
-      overall[name] =
-        name === 'pair' ? overPairs(input) : { undecided: true, reason: 'this release does not compute it' };
+/** How a test of the whole list is opened. */
+const OVER: Readonly<Record<string, (question: ListQuestion) => OverList>> = {
+  pair: ({ lattice, dimension }) => {
+    if (lattice.rank === 0) return known({ applies: false, reason: 'the rank is 0' });
+    if (dimension !== lattice.rank) return known({ applies: false, reason: 'n is not the rank' });
+    return new PairTest(lattice);
+  },
+};
+
+const known = (answer: TestAnswer): OverList => ({ take: () => {}, answer: () => answer });
+const notComputed = () => known({ undecided: true, reason: 'this release does not compute it' });
+
+export class TestsOnList {
+  private readonly over: ReadonlyMap<string, OverList>;
+  private taken = 0;
+
+  constructor(private readonly question: ListQuestion) {
+    const whole = question.tests.filter((name) => EACH[name] === undefined);
+    this.over = new Map(whole.map((name) => [name, (OVER[name] ?? notComputed)(question)]));
   }
-  return { overall, each };
+
+  /** The answers about this embedding. */
+  take(embedding: ListedEmbedding): Record<string, TestAnswer> {
+    this.taken += 1;
+    for (const test of this.over.values()) test.take(embedding);
+    const answers: Record<string, TestAnswer> = {};
+    for (const name of this.question.tests) {
+      const one = EACH[name];
+      if (one === undefined) continue;
+      answers[name] = onOne(this.question.lattice, embedding, one);
+      if (name === 'complement') answers['index'] = torsionIndex(embedding);
+    }
+    return answers;
+  }
+
+  /** The answers about the list as a whole, once all were taken. */
+  overall(complete: boolean): Record<string, TestAnswer> {
+    const answers: Record<string, TestAnswer> = {};
+    for (const name of this.question.tests) {
+      const over = this.over.get(name);
+      if (over !== undefined) answers[name] = over.answer(complete);
+      else if (this.taken === 0) answers[name] = { applies: false, reason: 'there is no embedding' };
+    }
+    return answers;
+  }
 }
 
 function onOne(lattice: Lattice, embedding: ListedEmbedding, test: (typeof EACH)[string]): TestAnswer {
@@ -67,10 +95,4 @@ function onOne(lattice: Lattice, embedding: ListedEmbedding, test: (typeof EACH)
   if (test.excess !== null && excess !== test.excess)
     return { applies: false, reason: test.excess === 0 ? 'n is not the rank' : `n is not the rank + ${test.excess}` };
   return test.answer(lattice, embedding);
-}
-
-function overPairs(input: TestsOnListInput): TestAnswer {
-  if (input.lattice.rank === 0) return { applies: false, reason: 'the rank is 0' };
-  if (input.dimension !== input.lattice.rank) return { applies: false, reason: 'n is not the rank' };
-  return pairAnswer(input.lattice, input.embeddings, input.complete);
 }

@@ -9,7 +9,7 @@ import {
   type RowsTree,
   type TestResult,
 } from '@palmette/certificate';
-import { testsOnList, type ArithmeticGround } from '@palmette/lattice';
+import { TestsOnList, type ArithmeticGround } from '@palmette/lattice';
 import {
   embeddingMatrix,
   orbitSize,
@@ -131,13 +131,9 @@ function testResults(
   dimension: number | null,
 ): { overall: Record<string, TestResult>; each: Record<string, TestResult>[] } {
   if (u.canonical.tests.length === 0) return { overall: {}, each: [] };
-  return testsOnList({
-    lattice: u.lattice,
-    dimension,
-    embeddings: records.map((r) => ({ rows: r.rows, zeros: r.zeros })),
-    complete,
-    tests: u.canonical.tests,
-  });
+  const tests = new TestsOnList({ lattice: u.lattice, dimension, tests: u.canonical.tests });
+  const each = records.map((r) => tests.take({ rows: r.rows, zeros: r.zeros }));
+  return { overall: tests.overall(complete), each };
 }
 
 function recordsOf(
