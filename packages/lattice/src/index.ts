@@ -5,6 +5,8 @@ export { diagramRegions } from './source-diagram.ts';
 export { arithmeticGround, type ArithmeticGround } from './arithmetic-ground.ts';
 export { columnGround, type ColumnGround } from './column-ground.ts';
 export { listAdmissibleColumns, type ColumnListing } from './admissible-columns.ts';
+export { automorphismGroup, type AutomorphismGroup } from './automorphisms.ts';
+export { AUTOMORPHISM_BOUNDS, BeyondBound } from './automorphism-bounds.ts';
 export { definiteness, discriminantGroup } from './invariants.ts';
 export { readPasted } from './read-pasted.ts';
 export { chainSource, readSourceText, rootLatticeSource } from './read-source-text.ts';
