@@ -8,6 +8,7 @@ import {
   type Source,
 } from '@palmette/lattice';
 import {
+  chooseMethod,
   choosePlan,
   embeddingMatrix,
   nextStep,
@@ -15,6 +16,7 @@ import {
   orbitSize,
   type Conclusion,
   type FoundOrbit,
+  type Method,
   type Plan,
   type StageResult,
 } from '@palmette/search';
@@ -33,24 +35,36 @@ export interface Found {
 export const matrix = (rows: readonly (readonly (number | string)[])[]): Source => ({ kind: 'matrix', rows });
 export const typed = (text: string): Source => readSourceText(text);
 
-/** @param arithmetic false: even what arithmetic excludes is searched */
-export function ask(
-  source: Source,
-  target: Target,
-  options: { readonly arithmetic?: boolean; readonly scope?: 'one' | 'all' } = {},
-): Found {
+export interface AskOptions {
+  /** False: even what arithmetic excludes is searched. */
+  readonly arithmetic?: boolean;
+  readonly scope?: 'one' | 'all';
+  /** Forces one; left out, the chooser chooses. */
+  readonly method?: Method;
+  readonly secondOpinion?: boolean;
+}
+
+export function ask(source: Source, target: Target, options: AskOptions = {}): Found {
   return askLattice(buildLattice(source), target, options);
 }
 
-export function askLattice(
-  lattice: Lattice,
-  target: Target,
-  options: { readonly arithmetic?: boolean; readonly scope?: 'one' | 'all' } = {},
-): Found {
+const SEED = 20261201;
+
+export function askLattice(lattice: Lattice, target: Target, options: AskOptions = {}): Found {
   const reduced = reducedBasis(lattice);
-  const arithmetic = (n: number) =>
-    options.arithmetic === false && n >= lattice.rank ? null : arithmeticGround(lattice, n);
-  const plan = choosePlan({ gram: reduced.gram, target, scope: options.scope ?? 'all', seed: 20261201 }, arithmetic);
+  const arithmetic = (n: number | null) =>
+    n === null || (options.arithmetic === false && n >= lattice.rank) ? null : arithmeticGround(lattice, n);
+  const plan = choosePlan(
+    {
+      gram: reduced.gram,
+      target,
+      scope: options.scope ?? 'all',
+      forced: options.method ?? null,
+      secondOpinion: options.secondOpinion ?? false,
+      seed: SEED,
+    },
+    arithmetic,
+  );
   const results: StageResult[] = [];
   const found = new Map<number, FoundOrbit[]>();
   let nodes = 0n;
@@ -74,12 +88,13 @@ export function askLattice(
         ),
       };
     }
-    const run = openRun(plan, step.stage, { from: [], to: null });
+    const { stage } = chooseMethod(plan, step.stage, SEED);
+    const run = openRun(plan, stage, { from: [], to: null });
     let end = run.advance(100_000);
     while (end === 'more') end = run.advance(100_000);
     nodes += run.nodes;
     results.push({
-      ...step.stage,
+      ...stage,
       complete: end === 'done',
       nodes: run.nodes.toString(),
       orbits: run.orbits.toString(),

@@ -70,7 +70,7 @@ function choose(plan: ToyPlan): ChooseEnd {
 function ahead(plan: ToyPlan, no: number, results: StageAhead['results']): StageAhead {
   const edge = (k: number) => [Math.floor((plan.n * k) / (plan.lopsided ? 100 : TOY_PARCELS))];
   return {
-    stage: { no, dimension: 3 + no, purpose: plan.oneAt === null ? 'all' : 'one', whole: false },
+    stage: { no, dimension: 3 + no, purpose: plan.oneAt === null ? 'all' : 'one', whole: false, method: 'rows', why: 'counted' },
     results,
     estimate: { probes: 1, mean: plan.n, low: plan.n, high: plan.n },
     parcels: Array.from({ length: TOY_PARCELS }, (_, k) => ({

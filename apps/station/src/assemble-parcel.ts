@@ -64,10 +64,7 @@ async function gather({ lease }: HeldParcel, { work }: Desk, { stage }: StageBoo
   for await (const chunk of work.found(lease.searchId, lease.stage)) found.push(chunk.raw);
   const orbits = sum('orbits');
   const result: StageBook['results'][number] = {
-    no: stage.no,
-    dimension: stage.dimension,
-    purpose: stage.purpose,
-    whole: stage.whole,
+    ...stage,
     // a stage that looks for one embedding ends at the first; otherwise every parcel ran to its end
     complete: stage.purpose === 'all' || orbits === 0n,
     nodes: sum('nodes').toString(),

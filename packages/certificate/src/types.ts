@@ -31,7 +31,7 @@ export type CertificateTarget =
 
 export interface CertificateClaim {
   readonly verdict: 'embeds' | 'excluded' | 'open';
-  readonly ground: 'embedding' | 'exhaustion' | 'dimension' | 'determinant' | 'hilbert' | null;
+  readonly ground: 'embedding' | 'exhaustion' | 'dimension' | 'determinant' | 'hilbert' | 'column' | null;
   readonly target: CertificateTarget;
   readonly scope: 'one' | 'all';
   readonly dimension: number | null;
@@ -49,26 +49,50 @@ export interface CertificateEmbedding {
   readonly tests: { readonly [name: string]: TestResult };
 }
 
+export type TreeBasis = null | { readonly matrix: StringMatrix; readonly inverse: StringMatrix };
+
 /** The tree of rows, revision 1. FORMAT.md, section 7. */
 export interface RowsTree {
   readonly method: 'rows';
   readonly revision: 1;
   readonly dimension: number;
-  readonly basis: null | { readonly matrix: StringMatrix; readonly inverse: StringMatrix };
+  readonly basis: TreeBasis;
   readonly order: readonly number[];
   readonly nodes: string;
   readonly orbits: string;
 }
 
+/** The trees of frames and of columns, revision 1. FORMAT.md, section 7. */
+export interface VectorsTree {
+  readonly method: 'frames' | 'columns';
+  readonly revision: 1;
+  /** Null: a tree of columns for every n. */
+  readonly dimension: number | null;
+  readonly basis: TreeBasis;
+  readonly vectors: string;
+  readonly orbits: string;
+}
+
+export type Tree = RowsTree | VectorsTree;
+
 export type Exclusion =
   | { readonly dimension: number; readonly ground: 'dimension' }
   | { readonly dimension: number; readonly ground: 'determinant' }
   | { readonly dimension: number; readonly ground: 'hilbert'; readonly primes: readonly string[] }
-  | { readonly dimension: number | null; readonly ground: 'exhaustion'; readonly tree: RowsTree };
+  | {
+      readonly dimension: number | null;
+      readonly ground: 'column';
+      readonly basis: TreeBasis;
+      readonly vectors: string;
+      readonly spanned: number;
+    }
+  | { readonly dimension: number | null; readonly ground: 'exhaustion'; readonly tree: Tree };
 
 export interface CertificateEvidence {
   readonly exclusions: readonly Exclusion[];
-  readonly list: RowsTree | null;
+  readonly list: Tree | null;
+  /** Present where the question asks for a second opinion. */
+  readonly second?: Tree | null;
 }
 
 export interface ChunkEntry {

@@ -143,6 +143,10 @@ export const TEST_NAMES = [
 ] as const;
 export type TestName = (typeof TEST_NAMES)[number];
 
+/** How embeddings are listed; FORMAT.md of packages/certificate says what each method does. */
+export const METHOD_NAMES = ['rows', 'columns', 'frames'] as const;
+export type MethodName = (typeof METHOD_NAMES)[number];
+
 export const QUESTION_FORMAT = 'palmette.question/1';
 
 export const question = z.strictObject({
@@ -152,6 +156,10 @@ export const question = z.strictObject({
   target,
   scope: z.enum(SCOPES).default('all'),
   tests: z.array(z.enum(TEST_NAMES)).max(TEST_NAMES.length).default([]),
+  /** Forces a method; left out, the engine chooses. */
+  method: z.enum(METHOD_NAMES).optional(),
+  /** Answers by two methods and says whether they agree. */
+  secondOpinion: z.boolean().optional(),
   budget: z.strictObject({ cpuSeconds: z.number().int().min(1).max(LIMITS.budgetCpuSeconds) }).optional(),
 });
 export type Question = z.output<typeof question>;

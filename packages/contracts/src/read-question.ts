@@ -170,7 +170,9 @@ function canonicalTarget(target: Target): Target {
 }
 
 /** The question as a certificate carries it: fixed key order, no title, no budget. */
-export type CanonicalQuestion = Pick<Question, 'format' | 'source' | 'target' | 'scope' | 'tests'>;
+export type CanonicalQuestion = Pick<Question, 'format' | 'source' | 'target' | 'scope' | 'tests' | 'method'> & {
+  readonly secondOpinion?: true;
+};
 
 export function canonicalQuestion(question: Question): CanonicalQuestion {
   const tests = new Set(question.tests);
@@ -180,5 +182,7 @@ export function canonicalQuestion(question: Question): CanonicalQuestion {
     target: canonicalTarget(question.target),
     scope: question.scope,
     tests: TEST_NAMES.filter((name) => tests.has(name)),
+    ...(question.method === undefined ? {} : { method: question.method }),
+    ...(question.secondOpinion === true ? { secondOpinion: true } : {}),
   };
 }

@@ -26,7 +26,7 @@ export type SearchPhase = (typeof SEARCH_PHASES)[number];
 export const VERDICTS = ['embeds', 'excluded', 'open'] as const;
 export type Verdict = (typeof VERDICTS)[number];
 
-export const GROUNDS = ['embedding', 'exhaustion', 'dimension', 'determinant', 'hilbert'] as const;
+export const GROUNDS = ['embedding', 'exhaustion', 'dimension', 'determinant', 'hilbert', 'column'] as const;
 export type Ground = (typeof GROUNDS)[number];
 
 export const ROLES = ['admin', 'researcher', 'reader'] as const;

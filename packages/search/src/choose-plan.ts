@@ -3,17 +3,19 @@
  * comes from the question, counted in listing steps and never in seconds, so that everybody gets the same plan.
  */
 import { isIdentity, lllGram, type ReadonlyBigMatrix, type Reduction } from '@palmette/exact';
-import { probeForm, type Estimate } from './estimate.ts';
+import { estimate, type Estimate } from './estimate.ts';
+import type { Method } from './method.ts';
 import { candidateOrders } from './order.ts';
 import { toPlanMatrix, type Plan, type PlanTarget } from './plan.ts';
 import { nextStep, type Arithmetic, type ArithmeticGroundLike } from './stages.ts';
-import { workingForm } from './working-form.ts';
 
 export interface SearchQuestion {
   /** Reduced Gram matrix, r × r, positive definite. */
   readonly gram: ReadonlyBigMatrix;
   readonly target: PlanTarget;
   readonly scope: 'one' | 'all';
+  readonly forced?: Method | null;
+  readonly secondOpinion?: boolean;
   /** 32 bits that the question determines. */
   readonly seed: number;
 }
@@ -36,35 +38,36 @@ export function choosePlan(question: SearchQuestion, arithmetic: Arithmetic<Arit
     candidateOrders(gram).map((order, i): { plan: Plan; words: string } => ({
       words: `${words}${['lightest first', 'smallest residual first', 'smallest residual first, connected'][i] ?? 'in the order given'}`,
       plan: {
-        method: 'rows',
-        revision: 1,
+        revision: 2,
         gram: toPlanMatrix(gram),
         change: change === null ? null : { matrix: toPlanMatrix(change.change), inverse: toPlanMatrix(change.inverse) },
         order,
         target: question.target,
         scope: question.scope,
+        forced: question.forced ?? null,
+        secondOpinion: question.secondOpinion ?? false,
         why: '',
       },
     })),
   );
   const [only] = candidates;
-  if (candidates.length === 1) return { ...only!.plan, why: `Rows, ${only!.words}.` };
+  if (candidates.length === 1) return { ...only!.plan, why: only!.words };
   const step = nextStep(only!.plan, [], arithmetic);
-  if ('conclusion' in step) return { ...only!.plan, why: 'Arithmetic settles it before any search.' };
+  if ('conclusion' in step) return { ...only!.plan, why: 'arithmetic settles it before any search' };
   const measured = candidates.map((c): Candidate => ({
     ...c,
-    estimate: probeForm(workingForm(c.plan), step.stage.dimension, {
-      probes: PROBES,
-      seed: question.seed,
-      steps: PROBE_STEPS,
-    }),
+    estimate: estimate(
+      c.plan,
+      { ...step.stage, method: 'rows' },
+      { probes: PROBES, seed: question.seed, steps: PROBE_STEPS },
+    ),
   }));
   const ranked = [...measured].sort((a, b) => a.estimate.mean - b.estimate.mean);
   const [best, second] = [ranked[0]!, ranked[1]!];
   const nodes = (e: Estimate) => `${Math.round(e.mean)}`;
   return {
     ...best.plan,
-    why: `Rows, ${best.words}, chosen because ${best.estimate.probes} probes put its tree at about ${nodes(best.estimate)} nodes and the next best of ${measured.length} orders at about ${nodes(second.estimate)}.`,
+    why: `${best.words} (${best.estimate.probes} probes put its tree at about ${nodes(best.estimate)} nodes, the next best of ${measured.length} orders at about ${nodes(second.estimate)})`,
   };
 }
 

@@ -3,11 +3,11 @@
  * weighed the same; what turns out long is cut again while it runs.
  */
 import { compareAddresses, type Address, type Interval } from './address.ts';
-import { openLadder } from './ladder.ts';
+import { walk } from './estimate.ts';
 import { LISTED } from './listing.ts';
+import { openLadder, rankOf } from './open-ladder.ts';
 import type { Plan } from './plan.ts';
 import type { Stage } from './stages.ts';
-import { workingForm, type WorkingForm } from './working-form.ts';
 
 export interface CoverPiece extends Interval {
   /** Estimated share of the tree. */
@@ -17,6 +17,7 @@ export interface CoverPiece extends Interval {
 interface Branch {
   readonly address: Address;
   readonly share: number;
+  readonly leaf: boolean;
 }
 
 /** Children that are counted; a node with more is cut among the first of them, the rest go with the last piece. */
@@ -28,14 +29,13 @@ const COVER_STEPS = 4_000_000;
 
 /** @param parcels how many pieces are wanted, roughly */
 export function cover(plan: Plan, stage: Stage, parcels: number): CoverPiece[] {
-  const form = workingForm(plan);
-  let branches: Branch[] = [{ address: [], share: 1 }];
+  let branches: Branch[] = [{ address: [], share: 1, leaf: rankOf(plan) === 0 }];
   const closed = new Set<Branch>();
   for (let steps = 0; branches.length < parcels && steps < COVER_STEPS;) {
-    const open = branches.filter((b) => b.address.length < form.rank && !closed.has(b));
+    const open = branches.filter((b) => !b.leaf && !closed.has(b));
     if (open.length === 0) break;
     const largest = open.reduce((a, b) => (b.share > a.share ? b : a));
-    const children = childBranches(form, stage.dimension, largest, parcels);
+    const children = childBranches(plan, stage, largest, parcels);
     steps += children.steps;
     if (children.branches.length === 0) closed.add(largest);
     else branches = branches.flatMap((b) => (b === largest ? children.branches : [b]));
@@ -49,28 +49,23 @@ export function cover(plan: Plan, stage: Stage, parcels: number): CoverPiece[] {
 }
 
 /** At most `most` runs of siblings. */
-function childBranches(
-  form: WorkingForm,
-  dimension: number,
-  parent: Branch,
-  most: number,
-): { branches: Branch[]; steps: number } {
-  const ladder = openLadder(form, dimension);
-  parent.address.forEach((child, depth) => {
-    ladder.begin(depth);
-    for (let i = 0; i <= child; i += 1) ladder.next(depth, Number.MAX_SAFE_INTEGER);
-    ladder.descend(depth);
-  });
+function childBranches(plan: Plan, stage: Stage, parent: Branch, most: number): { branches: Branch[]; steps: number } {
+  const ladder = openLadder(plan, stage);
+  walk(ladder, parent.address);
   const depth = parent.address.length;
   ladder.begin(depth);
   const last = ladder.steps + COUNT_STEPS;
   let count = 0;
-  while (count < COUNTED_CHILDREN && ladder.steps < last && ladder.next(depth, last - ladder.steps) === LISTED.found)
+  let leaves = false;
+  while (count < COUNTED_CHILDREN && ladder.steps < last && ladder.next(depth, last - ladder.steps) === LISTED.found) {
     count += 1;
+    leaves ||= ladder.childIsLeaf(depth);
+  }
   const stride = Math.max(1, Math.ceil(count / most));
   const branches = Array.from({ length: Math.ceil(count / stride) }, (_, i) => ({
     address: [...parent.address, i * stride],
     share: (parent.share * Math.min(stride, count - i * stride)) / count,
+    leaf: leaves,
   }));
   return { branches, steps: ladder.steps };
 }

@@ -30,6 +30,11 @@ export function treeBasis(plan: Plan, radical: Basis | null): Basis | null {
 function composeBasis(plan: Plan, radical: Basis | null): Basis | null {
   if (plan.change === null) return radical;
   const change = { matrix: fromPlanMatrix(plan.change.matrix), inverse: fromPlanMatrix(plan.change.inverse) };
+  return composeBases(change, radical);
+}
+
+/** A change of the reduced lattice's basis, after the basis that splits the radical off (null: nothing to split off). */
+export function composeBases(change: Basis, radical: Basis | null): Basis {
   if (radical === null) return change;
   const size = radical.matrix.length;
   const widen = (m: BigMatrix): BigMatrix =>

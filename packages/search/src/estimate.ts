@@ -1,11 +1,11 @@
 /** Knuth's estimate of a tree's size by random probes (Math. Comp. 29 (1975)): unbiased, with a high variance that is told. */
 import type { Address } from './address.ts';
-import { openLadder, type Ladder } from './ladder.ts';
+import type { Ladder } from './ladder.ts';
 import { LISTED } from './listing.ts';
+import { openLadder, rankOf } from './open-ladder.ts';
 import type { Plan } from './plan.ts';
 import { randomBelow } from './random.ts';
 import type { Stage } from './stages.ts';
-import { workingForm, type WorkingForm } from './working-form.ts';
 
 export interface Estimate {
   readonly probes: number;
@@ -27,20 +27,17 @@ const DEFAULT_STEPS = 2_000_000;
 /** Half width of the range in standard errors: 80 % of a normal distribution. */
 const EIGHT_IN_TEN = 1.2816;
 
-export function estimate(plan: Plan, stage: Stage, options: ProbeOptions): Estimate {
-  return probeForm(workingForm(plan), stage.dimension, options);
-}
-
 /** @returns the estimate of the nodes at and under `options.below` */
-export function probeForm(form: WorkingForm, dimension: number, options: ProbeOptions): Estimate {
+export function estimate(plan: Plan, stage: Stage, options: ProbeOptions): Estimate {
+  const rank = rankOf(plan);
   const below = randomBelow(options.seed);
   const sizes: number[] = [];
   let steps = options.steps ?? DEFAULT_STEPS;
   const start = options.below ?? [];
   for (let probe = 0; probe < options.probes && (steps > 0 || probe === 0); probe += 1) {
-    const ladder = openLadder(form, dimension);
-    walk(ladder, form, start);
-    sizes.push(probeOnce(ladder, form, start.length, below, Math.max(steps, 1_000)));
+    const ladder = openLadder(plan, stage);
+    walk(ladder, start);
+    sizes.push(rank === 0 ? 1 : probeOnce(ladder, start.length, below, Math.max(steps, 1_000)));
     steps -= ladder.steps;
   }
   const mean = sizes.reduce((sum, x) => sum + x, 0) / sizes.length;
@@ -50,36 +47,30 @@ export function probeForm(form: WorkingForm, dimension: number, options: ProbeOp
   return { probes: sizes.length, mean, low: Math.max(1, mean - half), high: mean + half };
 }
 
-function walk(ladder: Ladder, form: WorkingForm, address: Address): void {
+/** Leads a fresh ladder to an inner node. */
+export function walk(ladder: Ladder, address: Address): void {
   address.forEach((child, depth) => {
     ladder.begin(depth);
     for (let i = 0; i <= child; i += 1) ladder.next(depth, Number.MAX_SAFE_INTEGER);
-    if (depth + 1 < form.rank) ladder.descend(depth);
+    ladder.descend(depth);
   });
 }
 
 /** Walks down at random; a node with c children stands for c times what is below one of them. */
-function probeOnce(
-  ladder: Ladder,
-  form: WorkingForm,
-  from: number,
-  below: (n: number) => number,
-  steps: number,
-): number {
+function probeOnce(ladder: Ladder, from: number, below: (n: number) => number, steps: number): number {
   let size = 1;
   let weight = 1;
-  for (let depth = from; depth < form.rank; depth += 1) {
+  for (let depth = from; ; depth += 1) {
     const count = countChildren(ladder, depth, steps);
-    if (count === 0) break;
+    if (count === 0) return size;
     weight *= count;
     size += weight;
-    if (depth + 1 === form.rank) break;
     const chosen = below(count);
     ladder.begin(depth);
     for (let i = 0; i <= chosen; i += 1) ladder.next(depth, Number.MAX_SAFE_INTEGER);
+    if (ladder.childIsLeaf(depth)) return size;
     ladder.descend(depth);
   }
-  return size;
 }
 
 function countChildren(ladder: Ladder, depth: number, steps: number): number {

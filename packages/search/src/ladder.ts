@@ -1,4 +1,7 @@
-/** The path from the root to the node where the search stands: one listing for each depth, reused. */
+/**
+ * The path from the root to the node where the search stands, for every method; and that of the rows: one listing for each depth,
+ * reused.
+ */
 import { BigListing } from './big-listing.ts';
 import type { FoundOrbit } from './found.ts';
 import { Columns } from './columns.ts';
@@ -9,20 +12,22 @@ export interface Ladder {
   /** Lists the children of the node at `depth` from the beginning. The node was written there by `descend` or is the root. */
   begin(depth: number): void;
   next(depth: number, limit: number): Listed;
-  /** Where the listing at `depth` stands, and how to stand there again after `begin`. */
-  state(depth: number): ListingState;
-  restore(depth: number, state: ListingState): void;
-  /** Writes the child that was listed last at `depth` as the node at depth + 1. */
+  /** Where the listing at `depth` stands (plain JSON), and how to stand there again after `begin`. */
+  state(depth: number): unknown;
+  restore(depth: number, state: unknown): void;
+  /** Is the child that was listed last at `depth` a leaf? */
+  childIsLeaf(depth: number): boolean;
+  /** Writes the child that was listed last at `depth`, no leaf, as the node at depth + 1. */
   descend(depth: number): void;
-  /** The child that was listed last at depth rank − 1, as an orbit. */
-  orbit(): FoundOrbit;
+  /** The leaf that was listed last at `depth`, as an orbit. */
+  orbit(depth: number): FoundOrbit;
   /** Steps of listing so far. */
   readonly steps: number;
   readonly bytes: number;
 }
 
 /** @param dimension n: the root is n zero columns */
-export function openLadder(form: WorkingForm, dimension: number): Ladder {
+export function openRowLadder(form: WorkingForm, dimension: number): Ladder {
   return form.small ? new SmallLadder(form, dimension) : new BigLadder(form, dimension);
 }
 
@@ -57,8 +62,12 @@ class SmallLadder implements Ladder {
     return this.levels[depth]!.state();
   }
 
-  restore(depth: number, state: ListingState): void {
-    this.levels[depth]!.restore(state);
+  restore(depth: number, state: unknown): void {
+    this.levels[depth]!.restore(state as ListingState);
+  }
+
+  childIsLeaf(depth: number): boolean {
+    return depth + 1 === this.form.rank;
   }
 
   descend(depth: number): void {
@@ -112,8 +121,12 @@ class BigLadder implements Ladder {
     return this.levels[depth]!.state();
   }
 
-  restore(depth: number, state: ListingState): void {
-    this.levels[depth]!.restore(state);
+  restore(depth: number, state: unknown): void {
+    this.levels[depth]!.restore(state as ListingState);
+  }
+
+  childIsLeaf(depth: number): boolean {
+    return depth + 1 === this.form.rank;
   }
 
   descend(depth: number): void {

@@ -1,5 +1,6 @@
 /** The frozen plan of a search: what decides its trees. JSON only, so that it can be stored and sent as it is. */
 import type { BigMatrix, ReadonlyBigMatrix } from '@palmette/exact';
+import type { Method } from './method.ts';
 
 /** Above this rank a matrix is written as its nonzero entries. */
 const SPARSE_ABOVE = 200;
@@ -15,17 +16,21 @@ export type PlanTarget =
   | { readonly any: true };
 
 export interface Plan {
-  readonly method: 'rows';
-  readonly revision: 1;
+  /** Raised when the same question may give another tree. */
+  readonly revision: 2;
   /** The working Gram W, positive definite. */
   readonly gram: PlanMatrix;
   /** U with Uᵀ·(reduced Gram)·U = W, and its inverse; null is the identity. */
   readonly change: { readonly matrix: PlanMatrix; readonly inverse: PlanMatrix } | null;
-  /** Row of W at each depth. */
+  /** Row of W at each depth of a tree of rows. */
   readonly order: readonly number[];
   readonly target: PlanTarget;
   readonly scope: 'one' | 'all';
-  /** One sentence: what was chosen and why. */
+  /** The method that the question asks for; null leaves it to the chooser. */
+  readonly forced: Method | null;
+  /** Answer by a second method too. */
+  readonly secondOpinion: boolean;
+  /** Why this basis and this order of rows, in words. */
   readonly why: string;
 }
 

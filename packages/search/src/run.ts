@@ -4,11 +4,11 @@
  */
 import { compareAddresses, type Address, type Interval } from './address.ts';
 import type { FoundOrbit } from './found.ts';
-import { openLadder, type Ladder } from './ladder.ts';
-import { LISTED, type ListingState } from './listing.ts';
+import type { Ladder } from './ladder.ts';
+import { LISTED } from './listing.ts';
+import { openLadder, rankOf } from './open-ladder.ts';
 import type { Plan } from './plan.ts';
 import type { Stage } from './stages.ts';
-import { workingForm, type WorkingForm } from './working-form.ts';
 
 export type Advance = 'more' | 'done' | 'found';
 
@@ -22,7 +22,7 @@ const SHARE_DEPTH = 10;
 /** A checkpoint: the listing at each depth of the path, and the number of its next child. Null levels: not begun. */
 interface SavedRun {
   readonly path: readonly number[];
-  readonly levels: readonly { readonly next: number; readonly listing: ListingState }[] | null;
+  readonly levels: readonly { readonly next: number; readonly listing: unknown }[] | null;
   readonly nodes: string;
   readonly orbits: string;
 }
@@ -30,7 +30,7 @@ interface SavedRun {
 export class Run {
   nodes = 0n;
   orbits = 0n;
-  private readonly form: WorkingForm;
+  private readonly rank: number;
   private readonly ladder: Ladder;
   /** Child index at each depth; its length is the depth of the node where the run stands. */
   private readonly path: number[] = [];
@@ -39,17 +39,19 @@ export class Run {
   private to: Address | null;
   private begun = false;
   private finished = false;
+  /** The path leads to a leaf: nothing is listed below it. */
+  private atLeaf = false;
   private found: FoundOrbit[] = [];
   private readonly childCounts = new Map<string, number>();
 
   constructor(
-    plan: Plan,
+    private readonly plan: Plan,
     private readonly stage: Stage,
     private readonly interval: Interval,
     checkpoint?: string,
   ) {
-    this.form = workingForm(plan);
-    this.ladder = openLadder(this.form, stage.dimension);
+    this.rank = rankOf(plan);
+    this.ladder = openLadder(plan, stage);
     this.to = interval.to;
     if (checkpoint === undefined) return;
     const saved = JSON.parse(checkpoint) as SavedRun;
@@ -58,6 +60,7 @@ export class Run {
     if (saved.levels === null) return;
     this.begun = true;
     this.path.push(...saved.path);
+    this.atLeaf = saved.levels.length === saved.path.length;
     saved.levels.forEach(({ next, listing }, depth) => {
       if (depth > 0) this.ladder.descend(depth - 1);
       this.openChildren(depth);
@@ -78,7 +81,7 @@ export class Run {
     }
     for (let left = nodes * STEPS_PER_NODE; left > 0;) {
       const depth = this.path.length;
-      if (depth === this.form.rank) {
+      if (this.atLeaf) {
         if (!this.up()) return this.end();
         continue;
       }
@@ -117,9 +120,10 @@ export class Run {
   private enter(): void {
     this.nodes += 1n;
     const depth = this.path.length;
-    if (depth === this.form.rank) {
+    this.atLeaf = depth === 0 ? this.rank === 0 : this.ladder.childIsLeaf(depth - 1);
+    if (this.atLeaf) {
       this.orbits += 1n;
-      this.found.push(depth === 0 ? { columns: [], zeros: this.stage.dimension } : this.ladder.orbit());
+      this.found.push(depth === 0 ? { columns: [], zeros: this.stage.dimension } : this.ladder.orbit(depth - 1));
       return;
     }
     if (depth > 0) this.ladder.descend(depth - 1);
@@ -134,12 +138,13 @@ export class Run {
   private up(): boolean {
     if (this.path.length === 0) return false;
     this.path.pop();
+    this.atLeaf = false;
     return true;
   }
 
   /** Leads the ladder to a node that exists, without counting anything. */
   private walkTo(address: Address): void {
-    this.openOrLeaf(0);
+    if (this.rank > 0) this.openChildren(0);
     address.forEach((child, depth) => {
       while (this.index[depth]! <= child) {
         if (this.ladder.next(depth, Number.MAX_SAFE_INTEGER) !== LISTED.found)
@@ -147,15 +152,11 @@ export class Run {
         this.index[depth]! += 1;
       }
       this.path.push(child);
-      if (depth + 1 < this.form.rank) {
+      if (depth + 1 < address.length) {
         this.ladder.descend(depth);
         this.openChildren(depth + 1);
       }
     });
-  }
-
-  private openOrLeaf(depth: number): void {
-    if (depth < this.form.rank) this.openChildren(depth);
   }
 
   /** What was found since the last call, in tree order. */
@@ -167,7 +168,7 @@ export class Run {
 
   /** Where the run stands, down to the step of each listing. Found orbits must have been taken before. */
   checkpoint(): string {
-    const depths = Math.min(this.path.length + 1, this.form.rank);
+    const depths = this.atLeaf ? this.path.length : this.path.length + 1;
     const saved: SavedRun = {
       path: this.path,
       levels: this.begun
@@ -217,7 +218,7 @@ export class Run {
   get shareDone(): number {
     if (this.finished) return 1;
     if (!this.begun) return 0;
-    const next = this.path.length < this.form.rank ? [...this.path, this.index[this.path.length]!] : this.path;
+    const next = this.atLeaf ? this.path : [...this.path, this.index[this.path.length]!];
     const [from, at, to] = [
       this.position(this.interval.from),
       this.position(next),
@@ -239,7 +240,7 @@ export class Run {
     const key = node.join(' ');
     const known = this.childCounts.get(key);
     if (known !== undefined) return known;
-    const ladder = openLadder(this.form, this.stage.dimension);
+    const ladder = openLadder(this.plan, this.stage);
     node.forEach((child, depth) => {
       ladder.begin(depth);
       for (let i = 0; i <= child; i += 1) ladder.next(depth, Number.MAX_SAFE_INTEGER);
@@ -254,9 +255,14 @@ export class Run {
     return count;
   }
 
+  /** Steps of listing so far. */
+  get steps(): number {
+    return this.ladder.steps;
+  }
+
   /** Memory that the run counts for itself, in bytes. */
   get bytes(): number {
-    return this.ladder.bytes + this.found.length * (64 + 24 * this.form.rank) + this.childCounts.size * 64;
+    return this.ladder.bytes + this.found.length * (64 + 24 * this.rank) + this.childCounts.size * 64;
   }
 }
 

@@ -6,7 +6,9 @@
  * FORMAT.md). least: n = rank, rank + 1, … in turn, skipping what arithmetic excludes, until a tree shows an embedding;
  * after rank + 3 an existence tree at the bound, so that a lattice that embeds nowhere comes to an end.
  */
+import type { Method } from './method.ts';
 import { planGram, type Plan } from './plan.ts';
+import { withSecondOpinion } from './second-opinion.ts';
 
 export interface Stage {
   readonly no: number;
@@ -15,6 +17,12 @@ export interface Stage {
   readonly purpose: 'one' | 'all';
   /** An empty tree proves that no Z^n holds the lattice (n is at least the trace). */
   readonly whole: boolean;
+  /** `nextStep` proposes the one that the plan forces, or rows; the chooser settles it. */
+  readonly method: Method;
+  /** One sentence: what was chosen and why. */
+  readonly why: string;
+  /** Repeats an earlier stage by another method: its number. */
+  readonly repeats?: number;
 }
 
 export interface StageResult extends Stage {
@@ -22,10 +30,12 @@ export interface StageResult extends Stage {
   readonly complete: boolean;
   readonly nodes: string;
   readonly orbits: string;
+  /** The set of its orbits as `OrbitSet` writes it; kept where a second opinion was asked for. */
+  readonly set?: string;
 }
 
-/** What arithmetic says against Z^n; the shape of lattice's ground, carried through untouched. */
-export type Arithmetic<G> = (n: number) => G | null;
+/** What arithmetic says against Z^n (null: against every n); the shape of lattice's ground, carried through untouched. */
+export type Arithmetic<G> = (n: number | null) => G | null;
 
 export interface Conclusion<G = ArithmeticGroundLike> {
   readonly verdict: 'embeds' | 'excluded';
@@ -37,12 +47,15 @@ export interface Conclusion<G = ArithmeticGroundLike> {
   /** Stage whose orbits are the list or the witness. */
   readonly listStage: number | null;
   readonly listComplete: boolean;
+  /** Stage that says the same by another method, where a second opinion was asked for. */
+  readonly secondStage?: number;
 }
 
 export type ArithmeticGroundLike =
   | { readonly ground: 'dimension' }
   | { readonly ground: 'determinant' }
-  | { readonly ground: 'hilbert'; readonly primes: string[] };
+  | { readonly ground: 'hilbert'; readonly primes: string[] }
+  | { readonly ground: 'column'; readonly vectors: string; readonly spanned: number };
 
 export type Step = { readonly stage: Stage } | { readonly conclusion: Conclusion };
 
@@ -63,9 +76,20 @@ export function nextStep(
   results: readonly StageResult[],
   arithmetic: Arithmetic<ArithmeticGroundLike>,
 ): Step {
+  const first = firstOpinion(
+    plan,
+    results.filter((r) => r.repeats === undefined),
+    arithmetic,
+  );
+  return 'conclusion' in first && plan.secondOpinion ? withSecondOpinion(plan, first.conclusion, results) : first;
+}
+
+function firstOpinion(plan: Plan, results: readonly StageResult[], arithmetic: Arithmetic<ArithmeticGroundLike>): Step {
   const { target } = plan;
   if ('dimension' in target) return fixed(plan, target.dimension, results, arithmetic);
   if ('excess' in target) return fixed(plan, plan.order.length + target.excess, results, arithmetic);
+  const nowhere = arithmetic(null);
+  if (nowhere !== null) return excluded(null, { dimension: null, arithmetic: nowhere });
   if ('any' in target) return anyDimension(plan, results);
   return least(plan, target.least.upTo, results, arithmetic);
 }
@@ -79,13 +103,14 @@ function fixed(
   const ground = arithmetic(n);
   if (ground !== null) return excluded(n, { dimension: n, arithmetic: ground });
   const [result] = results;
-  if (result === undefined) return { stage: { no: 0, dimension: n, purpose: plan.scope, whole: false } };
+  if (result === undefined) return { stage: { ...proposed(plan, n), no: 0, purpose: plan.scope } };
   return result.orbits === '0' ? excluded(n, { dimension: n, stage: 0 }) : embeds(n, result, null);
 }
 
 function anyDimension(plan: Plan, results: readonly StageResult[]): Step {
   const [result] = results;
-  if (result === undefined) return { stage: { no: 0, dimension: traceOf(plan), purpose: plan.scope, whole: true } };
+  if (result === undefined)
+    return { stage: { ...proposed(plan, traceOf(plan)), no: 0, purpose: plan.scope, whole: true } };
   return result.orbits === '0' ? excluded(null, { dimension: null, stage: 0 }) : embeds(null, result, null);
 }
 
@@ -113,8 +138,8 @@ function least(
     const existence = atBound === undefined && n > rank + TRIED_FIRST && n < bound;
     return {
       stage: {
+        ...proposed(plan, existence ? bound : n),
         no: results.length,
-        dimension: existence ? bound : n,
         purpose: existence ? 'one' : plan.scope,
         whole: (existence || n === bound) && whole,
       },
@@ -123,6 +148,10 @@ function least(
   const ground = arithmetic(bound);
   if (ground === null) throw new Error(`the stages of a least search do not end: bound ${bound}`);
   return excluded(whole ? null : upTo!, { dimension: whole ? null : upTo!, arithmetic: ground });
+}
+
+function proposed(plan: Plan, dimension: number): Stage {
+  return { no: 0, dimension, purpose: 'all', whole: false, method: plan.forced ?? 'rows', why: '' };
 }
 
 /** What excludes n − 1: its tree, or arithmetic. */

@@ -1,8 +1,8 @@
 /** One whole question on one thread, within its own budget of CPU time. */
 import { Refusal } from '@palmette/contracts';
-import { nextStep, openRun, type FoundOrbit, type StageResult } from '@palmette/search';
+import { chooseMethod, MethodCannot, nextStep, openRun, type FoundOrbit, type StageResult } from '@palmette/search';
 import { certify, certifyOpen } from './certify.ts';
-import { begin, refused, stageResult } from './choose.ts';
+import { begin, methodRefusal, refused, stageResult } from './choose.ts';
 import { checkAtOnce } from './check-whole.ts';
 import { CpuMeter } from './cpu-meter.ts';
 import type { AnswerEnd } from './jobs.ts';
@@ -20,6 +20,7 @@ export function answerAlone(document: string, options: { readonly oneLine?: bool
     return answerUnderstood(understand(document, options));
   } catch (error) {
     if (error instanceof Refusal) return refused(error);
+    if (error instanceof MethodCannot) return refused(methodRefusal(error));
     throw error;
   }
 }
@@ -37,8 +38,9 @@ function answerUnderstood(u: Understood): AnswerEnd {
       concluded = step.conclusion;
       break;
     }
-    const run = openRun(plan!, step.stage, { from: [], to: null });
-    let end = run.advance(SLICE_NODES);
+    const { stage, ended } = chooseMethod(plan!, step.stage, u.seed);
+    const run = ended?.run ?? openRun(plan!, stage, { from: [], to: null });
+    let end = ended?.end ?? run.advance(SLICE_NODES);
     while (end === 'more' && meter.ms <= limitMs) end = run.advance(SLICE_NODES);
     if (end === 'more') {
       const listed = fixedDimension(u) === null && !('any' in u.question.target) ? [] : run.takeFound();
@@ -48,8 +50,9 @@ function answerUnderstood(u: Understood): AnswerEnd {
         ...certifyOpen(u, { dimension: fixedDimension(u), plan, found: listed }),
       };
     }
-    results.push(stageResult(step.stage, BigInt(run.nodes), BigInt(run.orbits), end === 'done'));
-    found.set(step.stage.no, run.takeFound());
+    const orbits = run.takeFound();
+    results.push(stageResult(stage, run, end === 'done', plan!.secondOpinion ? orbits : null));
+    found.set(stage.no, orbits);
   }
   const { certificate } = certify(u, plan, concluded, results, found.get(concluded.listStage ?? -1) ?? []);
   return { kind: 'answer', settled: true, certificate: verified(certificate) };

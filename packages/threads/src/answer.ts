@@ -85,10 +85,7 @@ async function runStages(
       const open = certifyOpen(understood, { dimension: fixed, plan: JSON.parse(plan) as Plan, found: listed });
       return { kind: 'answer', settled: false, certificate: open.certificate, reason: end.reason! };
     }
-    const results = [
-      ...ahead.results,
-      stageResult(stage, end.counts[0]!.nodes, end.counts[0]!.orbits, end.kind === 'done'),
-    ];
+    const results = [...ahead.results, stageResult(stage, end.counts[0]!, end.kind === 'done', null)];
     const assembled = await threads.run({
       kind: 'assemble',
       document,

@@ -3,17 +3,22 @@ import {
   CertificateWriter,
   stringMatrix,
   type CertificateClaim,
+  type CertificateEvidence,
   type CertificateLattice,
   type EmbeddingRecord,
   type Exclusion,
-  type RowsTree,
   type TestResult,
+  type Tree,
+  type TreeBasis,
 } from '@palmette/certificate';
-import { TestsOnList, type ArithmeticGround } from '@palmette/lattice';
+import { TestsOnList } from '@palmette/lattice';
 import {
+  countColumns,
   embeddingMatrix,
   orbitSize,
   treeBasis,
+  type ArithmeticGroundLike,
+  type Basis,
   type Conclusion,
   type FoundOrbit,
   type Plan,
@@ -55,7 +60,7 @@ export function certify(
   const kept = embeds ? (complete ? found : found.slice(0, 1)) : [];
   const width = list?.dimension ?? conclusion.dimension ?? 0;
   const records = recordsOf(u, plan, kept, anyTarget ? null : width);
-  const exclusion = conclusion.exclusion === null ? null : exclusionOf(u, plan!, conclusion.exclusion, results);
+  const exclusion = conclusion.exclusion === null ? null : exclusionOf(u, plan, conclusion.exclusion, results);
   const total = records.reduce((sum, r) => sum + r.orbitSize, 0n);
   const orbits = BigInt(records.length);
   const ground = embeds ? (complete ? 'exhaustion' : 'embedding') : exclusion!.ground;
@@ -72,6 +77,7 @@ export function certify(
   const evidence = {
     exclusions: exclusion === null ? [] : [exclusion],
     list: embeds && complete ? treeOf(u, plan!, list!) : null,
+    ...(canonical.secondOpinion === true ? { second: secondOf(u, plan, conclusion, results) } : {}),
   };
   const bytes = write(u, claim, records, complete, evidence);
   return {
@@ -100,7 +106,19 @@ export function certifyOpen(u: Understood, open: OpenParts): Omit<Certified, 'fa
     dimension: open.dimension,
     complete: false,
   };
-  return write(u, claim, records, false, { exclusions: [], list: null });
+  const second = canonical.secondOpinion === true ? { second: null } : {};
+  return write(u, claim, records, false, { exclusions: [], list: null, ...second });
+}
+
+/** The tree of the method that was asked first: the list that is written is that of the second. */
+function secondOf(
+  u: Understood,
+  plan: Plan | null,
+  conclusion: Conclusion,
+  results: readonly StageResult[],
+): Tree | null {
+  const stage = results.find((r) => r.no === conclusion.secondStage);
+  return stage === undefined ? null : treeOf(u, plan!, stage);
 }
 
 function write(
@@ -108,7 +126,7 @@ function write(
   claim: CertificateClaim,
   records: EmbeddingRecord[],
   complete: boolean,
-  evidence: { exclusions: Exclusion[]; list: RowsTree | null },
+  evidence: CertificateEvidence,
 ): Omit<Certified, 'facts'> {
   const writer = new CertificateWriter(sha256, u.oneLine);
   const tests = testResults(u, records, complete, claim.dimension);
@@ -150,43 +168,65 @@ function recordsOf(
   });
 }
 
-function treeOf(u: Understood, plan: Plan, result: StageResult): RowsTree {
-  const basis = treeBasis(plan, u.reduced.basis);
-  const size = u.lattice.gram.length;
+function treeOf(u: Understood, plan: Plan, result: StageResult): Tree {
+  const basis = basisRecord(u, treeBasis(plan, u.reduced.basis));
+  if (result.method === 'rows')
+    return {
+      method: 'rows',
+      revision: 1,
+      dimension: result.dimension,
+      basis,
+      order: plan.order,
+      nodes: result.nodes,
+      orbits: result.orbits,
+    };
   return {
-    method: 'rows',
+    method: result.method,
     revision: 1,
-    dimension: result.dimension,
-    basis:
-      basis === null ? null : { matrix: stringMatrix(basis.matrix, size), inverse: stringMatrix(basis.inverse, size) },
-    order: plan.order,
-    nodes: result.nodes,
+    dimension: result.method === 'columns' && result.whole ? null : result.dimension,
+    basis,
+    vectors: String(countColumns(plan, result)),
     orbits: result.orbits,
   };
 }
 
+function basisRecord(u: Understood, basis: Basis | null): TreeBasis {
+  const size = u.lattice.gram.length;
+  return basis === null
+    ? null
+    : { matrix: stringMatrix(basis.matrix, size), inverse: stringMatrix(basis.inverse, size) };
+}
+
 function exclusionOf(
   u: Understood,
-  plan: Plan,
+  plan: Plan | null,
   exclusion: NonNullable<Conclusion['exclusion']>,
   results: readonly StageResult[],
 ): Exclusion {
-  if (exclusion.arithmetic !== undefined) return arithmeticExclusion(exclusion.dimension!, exclusion.arithmetic);
+  if (exclusion.arithmetic !== undefined) return arithmeticExclusion(u, exclusion.dimension, exclusion.arithmetic);
   return {
     dimension: exclusion.dimension,
     ground: 'exhaustion',
     tree: treeOf(
       u,
-      plan,
+      plan!,
       results.find((r) => r.no === exclusion.stage)!,
     ),
   };
 }
 
-function arithmeticExclusion(dimension: number, ground: ArithmeticGround): Exclusion {
+function arithmeticExclusion(u: Understood, dimension: number | null, ground: ArithmeticGroundLike): Exclusion {
+  if (ground.ground === 'column')
+    return {
+      dimension,
+      ground: 'column',
+      basis: basisRecord(u, u.shortBasis()),
+      vectors: ground.vectors,
+      spanned: ground.spanned,
+    };
   return ground.ground === 'hilbert'
-    ? { dimension, ground: 'hilbert', primes: ground.primes }
-    : { dimension, ground: ground.ground };
+    ? { dimension: dimension!, ground: 'hilbert', primes: ground.primes }
+    : { dimension: dimension!, ground: ground.ground };
 }
 
 function latticeOf(u: Understood): CertificateLattice {

@@ -1,11 +1,14 @@
 /** The first look at a question: arithmetic, then a plan, then as much search as fits into the quick budget. */
 import { Refusal } from '@palmette/contracts';
 import {
+  chooseMethod,
   choosePlan,
   cover,
   estimate,
+  MethodCannot,
   nextStep,
   openRun,
+  OrbitSet,
   type Conclusion,
   type FoundOrbit,
   type Plan,
@@ -44,24 +47,45 @@ export function choose(document: string, quickCpuMs: number): ChooseEnd {
     if (error instanceof Refusal) return refused(error);
     throw error;
   }
-  const start = begin(understood);
-  const quick = runQuickly(understood, start.plan, start.conclusion, meter, quickCpuMs);
+  try {
+    return chooseFor(understood, quickCpuMs, meter);
+  } catch (error) {
+    if (error instanceof MethodCannot) return refused(methodRefusal(error));
+    throw error;
+  }
+}
+
+function chooseFor(u: Understood, quickCpuMs: number, meter: CpuMeter): ChooseEnd {
+  const start = begin(u);
+  const quick = runQuickly(u, start.plan, start.conclusion, meter, quickCpuMs);
   if (quick.kind === 'concluded') {
     return settled(
-      certify(understood, start.plan, quick.conclusion, quick.results, quick.found),
-      start.plan?.why ?? ARITHMETIC_WHY,
+      certify(u, start.plan, quick.conclusion, quick.results, quick.found),
+      methodWords(quick.results),
       quick.results,
       meter,
     );
   }
   return {
     kind: 'planned',
-    rank: understood.lattice.rank,
+    rank: u.lattice.rank,
     plan: JSON.stringify(start.plan),
-    method: start.plan!.why,
-    ahead: ahead(start.plan!, quick.stage, quick.results, understood.seed),
+    method: quick.stage.why,
+    ahead: ahead(start.plan!, quick.stage, quick.results, u.seed),
     cpuMs: meter.ms,
   };
+}
+
+export function methodRefusal(error: MethodCannot): Refusal {
+  return new Refusal('limit', `this method cannot answer the question: ${error.message}`, '/method');
+}
+
+/** What was chosen and why: the sentence of the stage that decided, and of the second opinion. */
+export function methodWords(results: readonly StageResult[]): string {
+  const said = results.filter((r) => r.repeats === undefined).at(-1)?.why;
+  const second = results.find((r) => r.repeats !== undefined);
+  if (said === undefined) return ARITHMETIC_WHY;
+  return second === undefined ? said : `${said} ${second.why} They agree: ${second.orbits} orbits.`;
 }
 
 export const ARITHMETIC_WHY = 'Arithmetic settles it before any search.';
@@ -85,7 +109,14 @@ export function begin(u: Understood): { plan: Plan | null; conclusion: Conclusio
   }
   return {
     plan: choosePlan(
-      { gram: u.reduced.gram, target: u.question.target, scope: u.question.scope, seed: u.seed },
+      {
+        gram: u.reduced.gram,
+        target: u.question.target,
+        scope: u.question.scope,
+        forced: u.question.method ?? null,
+        secondOpinion: u.question.secondOpinion === true,
+        seed: u.seed,
+      },
       u.arithmetic,
     ),
     conclusion: null,
@@ -121,31 +152,44 @@ function runQuickly(
         found: found.get(step.conclusion.listStage ?? -1) ?? [],
       };
     }
-    const run = openRun(plan!, step.stage, { from: [], to: null });
-    let end = run.advance(SLICE_NODES);
+    const { stage, ended } = chooseMethod(plan!, step.stage, u.seed);
+    const run = ended?.run ?? openRun(plan!, stage, { from: [], to: null });
+    let end = ended?.end ?? run.advance(SLICE_NODES);
     while (end === 'more') {
-      if (meter.ms > quickCpuMs || run.nodes > QUICK_NODES) return { kind: 'long', stage: step.stage, results };
+      if (meter.ms > quickCpuMs || run.nodes > QUICK_NODES) return { kind: 'long', stage, results };
       end = run.advance(SLICE_NODES);
     }
-    results.push(stageResult(step.stage, BigInt(run.nodes), BigInt(run.orbits), end === 'done'));
-    found.set(step.stage.no, run.takeFound());
+    const orbits = run.takeFound();
+    results.push(stageResult(stage, run, end === 'done', plan!.secondOpinion ? orbits : null));
+    found.set(stage.no, orbits);
   }
 }
 
-export function stageResult(stage: Stage, nodes: bigint, orbits: bigint, complete: boolean): StageResult {
+/** @param orbits what was found, where a second opinion has to compare it; else null */
+export function stageResult(
+  stage: Stage,
+  counts: { readonly nodes: bigint; readonly orbits: bigint },
+  complete: boolean,
+  orbits: Iterable<FoundOrbit> | null,
+): StageResult {
   return {
-    no: stage.no,
-    dimension: stage.dimension,
-    purpose: stage.purpose,
-    whole: stage.whole,
+    ...stage,
     complete,
-    nodes: nodes.toString(),
-    orbits: orbits.toString(),
+    nodes: counts.nodes.toString(),
+    orbits: counts.orbits.toString(),
+    ...(orbits === null ? {} : { set: setOf(orbits) }),
   };
 }
 
-/** Estimate and cover of the stage that comes next. */
-export function ahead(plan: Plan, stage: Stage, results: readonly StageResult[], seed: number): StageAhead {
+function setOf(orbits: Iterable<FoundOrbit>): string {
+  const set = new OrbitSet();
+  for (const orbit of orbits) set.add(orbit);
+  return set.toString();
+}
+
+/** Method, estimate and cover of the stage that comes next. */
+export function ahead(plan: Plan, next: Stage, results: readonly StageResult[], seed: number): StageAhead {
+  const stage = next.why === '' ? chooseMethod(plan, next, seed).stage : next;
   return {
     stage,
     results,

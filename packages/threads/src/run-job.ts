@@ -7,11 +7,11 @@ import {
   splitCheck,
   type CheckWork,
 } from '@palmette/checker';
-import { nextStep, openRun, type FoundOrbit, type Plan } from '@palmette/search';
+import { nextStep, openRun, type FoundOrbit, type Plan, type StageResult } from '@palmette/search';
 import { answerAlone } from './answer-alone.ts';
 import { checkAtOnce } from './check-whole.ts';
 import { certify } from './certify.ts';
-import { ahead, choose } from './choose.ts';
+import { ahead, choose, methodWords, stageResult } from './choose.ts';
 import { CpuMeter } from './cpu-meter.ts';
 import type {
   AssembleEnd,
@@ -73,18 +73,19 @@ function assemble(job: AssembleJob): AssembleEnd {
   const meter = new CpuMeter();
   const understood = understand(job.document);
   const plan = JSON.parse(job.plan) as Plan;
-  const step = nextStep(plan, [...job.results], understood.arithmetic);
-  if ('stage' in step)
-    return { kind: 'stage', ahead: ahead(plan, step.stage, job.results, understood.seed), cpuMs: meter.ms };
   const found: FoundOrbit[] = unpackFound(job.found);
-  const certified = certify(understood, plan, step.conclusion, job.results, found);
-  const nodes = job.results.reduce((sum, r) => sum + BigInt(r.nodes), 0n);
+  const results = plan.secondOpinion ? withSet(job.results, found) : job.results;
+  const step = nextStep(plan, results, understood.arithmetic);
+  if ('stage' in step)
+    return { kind: 'stage', ahead: ahead(plan, step.stage, results, understood.seed), cpuMs: meter.ms };
+  const certified = certify(understood, plan, step.conclusion, results, found);
+  const nodes = results.reduce((sum, r) => sum + BigInt(r.nodes), 0n);
   if (nodes <= BigInt(job.wholeCheckNodes)) {
     return {
       kind: 'settled',
       ...certified,
       checker: checkAtOnce(certified.certificate),
-      method: plan.why,
+      method: methodWords(results),
       nodes,
       cpuMs: meter.ms,
     };
@@ -98,6 +99,13 @@ function assemble(job: AssembleJob): AssembleEnd {
     ),
     cpuMs: meter.ms,
   };
+}
+
+/** The last stage's result with the set of its orbits, for the second opinion to compare. */
+function withSet(results: readonly StageResult[], found: readonly FoundOrbit[]): StageResult[] {
+  const last = results.at(-1)!;
+  const counts = { nodes: BigInt(last.nodes), orbits: BigInt(last.orbits) };
+  return [...results.slice(0, -1), stageResult(last, counts, last.complete, found)];
 }
 
 /** The certificate that this thread opened last: the parcels of one check come one after the other. */

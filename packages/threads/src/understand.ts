@@ -1,22 +1,28 @@
 /** From the text of a question to its lattice, reduced basis and arithmetic. */
 import { createHash } from 'node:crypto';
 import { canonicalQuestion, readQuestion, Refusal, type CanonicalQuestion, type Question } from '@palmette/contracts';
+import { lllGram } from '@palmette/exact';
 import {
   arithmeticGround,
   buildLattice,
+  columnGround,
   reducedBasis,
   SourceFault,
   type ArithmeticGround,
+  type ColumnGround,
   type Lattice,
 } from '@palmette/lattice';
+import { composeBases, type Basis } from '@palmette/search';
 
 export interface Understood {
   readonly question: Question;
   readonly canonical: CanonicalQuestion;
   readonly lattice: Lattice;
   readonly reduced: ReturnType<typeof reducedBasis>;
-  /** Why the lattice cannot embed in Z^n by arithmetic alone, or null. */
-  readonly arithmetic: (n: number) => ArithmeticGround | null;
+  /** Why the lattice cannot embed in Z^n (null: in any) by arithmetic alone, or null. */
+  readonly arithmetic: (n: number | null) => ArithmeticGround | ColumnGround | null;
+  /** The basis in which the admissible columns were listed: that of a ground `column`. */
+  readonly shortBasis: () => Basis | null;
   /** The certificate is one line whatever its size. */
   readonly oneLine: boolean;
   /** 32 bits of the canonical question's hash: seeds every probe. */
@@ -24,6 +30,10 @@ export interface Understood {
 }
 
 export const sha256 = (bytes: Uint8Array | string): string => createHash('sha256').update(bytes).digest('hex');
+
+/** The ground `column` is tried up to this rank, for so many entries of columns: milliseconds. */
+const COLUMN_RANK = 60;
+const COLUMN_STEPS = 20_000;
 
 /**
  * Reads and builds.
@@ -33,19 +43,29 @@ export function understand(document: string, options: { readonly oneLine?: boole
   const question = readQuestion(document);
   const lattice = built(question);
   const canonical = canonicalQuestion(question);
-  const known = new Map<number, ArithmeticGround | null>();
+  const reduced = reducedBasis(lattice);
+  const known = new Map<number | null, ArithmeticGround | ColumnGround | null>();
+  let short: ReturnType<typeof lllGram> | null = null;
+  const reduction = () => (short ??= lllGram(reduced.gram));
   return {
     question,
     canonical,
     lattice,
-    reduced: reducedBasis(lattice),
+    reduced,
     arithmetic: (n) => {
-      if (!known.has(n)) known.set(n, arithmeticGround(lattice, n));
+      if (!known.has(n)) known.set(n, (n === null ? null : arithmeticGround(lattice, n)) ?? column(n));
       return known.get(n)!;
     },
+    shortBasis: () => composeBases({ matrix: reduction().change, inverse: reduction().inverse }, reduced.basis),
     oneLine: options.oneLine === true,
     seed: Number.parseInt(sha256(JSON.stringify(canonical)).slice(0, 8), 16),
   };
+
+  function column(n: number | null): ColumnGround | null {
+    if (lattice.rank > COLUMN_RANK) return null;
+    const ground = columnGround(reduction().gram, n, COLUMN_STEPS);
+    return ground === 'too many' ? null : ground;
+  }
 }
 
 function built(question: Question): Lattice {

@@ -11,6 +11,8 @@ export interface ExclusionFacts {
   readonly rank: number | null;
   readonly determinant?: string | undefined;
   readonly primes?: readonly string[] | undefined;
+  /** Admissible columns up to sign, and the dimension of their span. */
+  readonly columns?: { readonly vectors: string; readonly spanned: number } | undefined;
 }
 
 const SHORT: Readonly<Record<Ground, string>> = {
@@ -19,6 +21,7 @@ const SHORT: Readonly<Record<Ground, string>> = {
   dimension: 'the dimension',
   determinant: 'the determinant',
   hilbert: 'Hilbert symbols',
+  column: 'admissible columns',
 };
 
 /** “exhaustion”, “the determinant”, for a table and after “Ground:”. */
@@ -40,6 +43,12 @@ export function exclusionReason(facts: ExclusionFacts): string {
         : `At n = rank the determinant has to be a square; ${integerInWords(facts.determinant)} is not one.`;
     case 'hilbert':
       return `Over the rationals the form is not represented by ${dimension === null ? 'n' : integerInWords(dimension)} squares: ${primesInWords(facts.primes)}.`;
+    case 'column':
+      return facts.columns === undefined
+        ? 'The columns that an embedding could have do not span the space: there are too few of them.'
+        : facts.columns.vectors === '0'
+          ? 'No integer column c has cᵀQ⁻¹c ≤ 1, and every column of an embedding does.'
+          : `Only ${integerInWords(facts.columns.vectors)} integer columns could occur in an embedding (cᵀQ⁻¹c ≤ 1), and they span dimension ${facts.columns.spanned}${rank === null ? '' : ` of ${rank}`}.`;
     case 'exhaustion':
       return dimension === null
         ? 'Every branch was searched at a width that is enough for any n; none ends in an embedding.'
@@ -67,6 +76,8 @@ export function exclusionClause(facts: ExclusionFacts): string {
         : `${integerInWords(facts.determinant)} is not a square, so ${so}`;
     case 'hilbert':
       return `${so} by ${primesInWords(facts.primes).replace(/^the Hilbert symbols fail/, 'Hilbert symbols')}`;
+    case 'column':
+      return `${so}, because the columns that could occur do not span`;
     case 'dimension':
       return `${so}, being smaller than the rank`;
     default:

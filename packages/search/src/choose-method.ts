@@ -1,0 +1,130 @@
+/**
+ * Chooses the method of a stage. Rows, frames and columns are tried in turn for as many listing steps as the round allows, each going on
+ * where it stood, until one ends; if none does, the one whose estimate is least goes on alone. Rounds, steps and probes come from the
+ * question and from constants of the plan's revision, never from a clock, so everybody chooses the same.
+ */
+import { estimate, type Estimate } from './estimate.ts';
+import { METHODS, type Method } from './method.ts';
+import { columnsOf, rankOf, whyNot } from './open-ladder.ts';
+import type { Plan } from './plan.ts';
+import { openRun, type Advance, type Run } from './run.ts';
+import type { Stage } from './stages.ts';
+
+/** A forced method cannot answer the question. */
+export class MethodCannot extends Error {
+  override readonly name = 'MethodCannot';
+}
+
+export interface ChosenStage {
+  readonly stage: Stage;
+  /** The run that ended while the methods were tried. */
+  readonly ended: { readonly run: Run; readonly end: Exclude<Advance, 'more'> } | null;
+}
+
+/** Units of work (16 listing steps each) that each method gets in a round. */
+const ROUNDS = [4_000, 60_000, 600_000];
+/** Values that may be tried for the list of columns, for one unit of work of the round. */
+const LISTING_STEPS = 16;
+const PROBES = 60;
+const PROBE_STEPS = 1_500_000;
+/** Columns answer `any` and large n; below this excess frames and rows are better. */
+const COLUMNS_FROM = 3;
+
+interface Trial {
+  readonly stage: Stage;
+  run: Run | null;
+  note: string;
+}
+
+/**
+ * @param seed 32 bits that the question determines
+ * @throws MethodCannot where the question forces a method that cannot answer it
+ */
+export function chooseMethod(plan: Plan, stage: Stage, seed: number): ChosenStage {
+  if (stage.repeats !== undefined) return { stage, ended: null };
+  if (plan.forced !== null) return { stage: forcedStage(plan, stage, plan.forced), ended: null };
+  const trials = METHODS.filter((m) => mayTry(m, plan, stage)).map((method): Trial => ({
+    stage: { ...stage, method },
+    run: null,
+    note: '',
+  }));
+  if (rankOf(plan) > 0)
+    for (const [round, units] of ROUNDS.entries()) {
+      for (const trial of trials) {
+        const end = advance(plan, trial, units);
+        if (end === 'more') continue;
+        const { method } = trial.stage;
+        const why =
+          round === 0 && method === 'rows'
+            ? `Rows, ${plan.why}: ${trial.run!.nodes} nodes.`
+            : `${named(method, plan)}: ended after ${trial.run!.nodes} nodes${others(trials, trial)}.`;
+        return { stage: { ...trial.stage, why }, ended: { run: trial.run!, end } };
+      }
+    }
+  return { stage: byEstimate(plan, trials, seed), ended: null };
+}
+
+function mayTry(method: Method, plan: Plan, stage: Stage): boolean {
+  const excess = stage.dimension - rankOf(plan);
+  if (method === 'columns' && !stage.whole && excess < COLUMNS_FROM) return false;
+  return whyNot(method, plan, stage.dimension, stage.whole) === null;
+}
+
+function advance(plan: Plan, trial: Trial, units: number): Advance {
+  const { method, dimension } = trial.stage;
+  if (trial.run === null) {
+    if (method !== 'rows') {
+      const unit = method === 'frames' && dimension === rankOf(plan);
+      if (columnsOf(plan, unit, units * LISTING_STEPS) === null) return 'more';
+    }
+    trial.run = openRun(plan, trial.stage, { from: [], to: null });
+  }
+  return trial.run.advance(units);
+}
+
+function named(method: Method, plan: Plan): string {
+  return method === 'rows' ? `Rows, ${plan.why}` : method === 'frames' ? 'Frames' : 'Columns';
+}
+
+function others(trials: readonly Trial[], chosen: Trial): string {
+  const left = trials.filter((t) => t !== chosen && t.run !== null);
+  return left.map((t) => `; ${t.stage.method} had not ended after ${t.run!.nodes}`).join('');
+}
+
+function byEstimate(plan: Plan, trials: readonly Trial[], seed: number): Stage {
+  const open = trials.filter((t) => t.run !== null);
+  if (open.length <= 1) {
+    const [only] = open.length === 1 ? open : trials;
+    return { ...only!.stage, why: `${named(only!.stage.method, plan)}: no other method can list this in reach.` };
+  }
+  const measured = open.map((trial) => {
+    const guess = estimate(plan, trial.stage, { probes: PROBES, seed, steps: PROBE_STEPS });
+    return { trial, guess, work: guess.mean * stepsPerNode(trial.run!) };
+  });
+  measured.sort((a, b) => a.work - b.work);
+  const [best, ...rest] = measured;
+  const told = (m: { trial: Trial; guess: Estimate }) => `about ${Math.round(m.guess.mean)} nodes`;
+  return {
+    ...best!.trial.stage,
+    why: `${named(best!.trial.stage.method, plan)}: ${best!.guess.probes} probes put the tree at ${told(best!)}${rest
+      .map((m) => `, that of ${m.trial.stage.method} at ${told(m)}`)
+      .join('')}.`,
+  };
+}
+
+function stepsPerNode(run: Run): number {
+  return run.steps / Math.max(1, Number(run.nodes));
+}
+
+function forcedStage(plan: Plan, stage: Stage, method: Method): Stage {
+  const reason = whyNot(method, plan, stage.dimension, stage.whole);
+  if (
+    reason === null &&
+    method !== 'rows' &&
+    columnsOf(plan, method === 'frames' && stage.dimension === rankOf(plan)) === null
+  )
+    throw new MethodCannot('the admissible columns are too many to be listed');
+  if (reason === null) return { ...stage, method, why: `${named(method, plan)}, as the question asks.` };
+  if ('least' in plan.target) return { ...stage, method: 'rows', why: `Rows, ${plan.why}: ${reason}.` };
+  throw new MethodCannot(reason);
+}

@@ -1,0 +1,98 @@
+/** The ladder of a stage by its method, and what all runs of a plan share: the working form, the dual, its admissible columns. */
+import { fromPlanMatrix, type Plan } from './plan.ts';
+import { admissibleColumns, type AdmissibleColumns } from './admissible-columns.ts';
+import { ColumnsLadder } from './columns-ladder.ts';
+import { dualForm, type DualForm } from './dual-form.ts';
+import { rootsFit } from './frame-list.ts';
+import { frameRoot, FramesLadder, type FrameRoot } from './frames-ladder.ts';
+import { openRowLadder, type Ladder } from './ladder.ts';
+import type { Method } from './method.ts';
+import type { Stage } from './stages.ts';
+import { workingForm, type WorkingForm } from './working-form.ts';
+
+/** Most columns that are kept: 4 bytes for each entry, 8 for each gap. */
+export const MAX_COLUMNS = 2_000_000;
+/** Values that are tried while they are listed: some seconds. */
+const MAX_LISTING_STEPS = 200_000_000;
+/** Above this rank the dual is not computed: it costs the cube of the rank in big integers. */
+const MAX_DUAL_RANK = 160;
+
+interface Prepared {
+  rows?: WorkingForm;
+  dual?: DualForm | null;
+  /** What was listed within so many steps: [all, those of norm 1]. */
+  readonly columns: [Tried, Tried];
+  readonly frames: Map<number, FrameRoot>;
+}
+
+interface Tried {
+  readonly steps: number;
+  readonly columns: AdmissibleColumns | null;
+}
+
+const UNTRIED: Tried = { steps: 0, columns: null };
+const prepared = new WeakMap<Plan, Prepared>();
+
+function preparedFor(plan: Plan): Prepared {
+  const known = prepared.get(plan);
+  if (known !== undefined) return known;
+  const fresh: Prepared = { frames: new Map(), columns: [UNTRIED, UNTRIED] };
+  prepared.set(plan, fresh);
+  return fresh;
+}
+
+export function rankOf(plan: Plan): number {
+  return plan.order.length;
+}
+
+export function dualOf(plan: Plan): DualForm | null {
+  const at = preparedFor(plan);
+  if (at.dual === undefined) at.dual = rankOf(plan) > MAX_DUAL_RANK ? null : dualForm(fromPlanMatrix(plan.gram));
+  return at.dual;
+}
+
+/**
+ * The admissible columns of a plan, listed once.
+ * @param unit those with cᵀW⁻¹c = 1
+ * @returns null where doubles are not precise enough, or there are too many within `steps`
+ */
+export function columnsOf(plan: Plan, unit: boolean, steps = MAX_LISTING_STEPS): AdmissibleColumns | null {
+  const at = preparedFor(plan);
+  const which = unit ? 1 : 0;
+  const known = at.columns[which];
+  if (known.columns !== null || steps <= known.steps) return known.columns;
+  const form = dualOf(plan);
+  const columns = form === null ? null : admissibleColumns(form, unit, { steps, vectors: MAX_COLUMNS });
+  at.columns[which] = { steps, columns };
+  return columns;
+}
+
+/** Admissible columns that a finished stage of frames or columns listed: the `vectors` of its tree. */
+export function countColumns(plan: Plan, stage: Stage): number {
+  return columnsOf(plan, stage.method === 'frames' && stage.dimension === rankOf(plan))?.count ?? 0;
+}
+
+/** Why a method cannot list the embeddings in Z^n, in words, or null if it can. */
+export function whyNot(method: Method, plan: Plan, dimension: number, whole: boolean): string | null {
+  if (method === 'rows') return null;
+  const excess = dimension - rankOf(plan);
+  if (method === 'frames' && (whole || excess < 0 || excess > 2)) return 'frames need n = rank, rank + 1 or rank + 2';
+  const form = dualOf(plan);
+  if (form === null) return `the dual of this form is not listed (rank above ${MAX_DUAL_RANK} or entries above 2^15)`;
+  if (form.direct === null && (method === 'columns' || excess === 2))
+    return 'the determinant of this form is too big for doubles to be exact';
+  if (method === 'frames' && excess === 1 && !rootsFit(form)) return 'the determinant of this form is above 2^100';
+  return null;
+}
+
+export function openLadder(plan: Plan, stage: Stage): Ladder {
+  const at = preparedFor(plan);
+  if (stage.method === 'rows' || rankOf(plan) === 0)
+    return openRowLadder((at.rows ??= workingForm(plan)), stage.dimension);
+  const excess = stage.dimension - rankOf(plan);
+  const columns = columnsOf(plan, stage.method === 'frames' && excess === 0);
+  if (columns === null) throw new RangeError(`the admissible columns cannot be listed for ${stage.method}`);
+  if (stage.method === 'columns') return new ColumnsLadder(dualOf(plan)!, columns, stage.dimension);
+  if (!at.frames.has(excess)) at.frames.set(excess, frameRoot(dualOf(plan)!, columns, excess));
+  return new FramesLadder(at.frames.get(excess)!, stage.dimension);
+}

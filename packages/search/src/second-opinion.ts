@@ -1,0 +1,90 @@
+/**
+ * A second opinion: the tree that carries a conclusion is searched again by another method, and the two must list the same
+ * orbits. They share no bound and no order, so agreement means something; a disagreement is a fault of ours and is never an answer.
+ */
+import type { FoundOrbit } from './found.ts';
+import { METHODS, type Method } from './method.ts';
+import { whyNot } from './open-ladder.ts';
+import type { Plan } from './plan.ts';
+import type { Conclusion, StageResult, Step } from './stages.ts';
+
+/** Two methods list different orbits. */
+export class MethodsDisagree extends Error {
+  override readonly name = 'MethodsDisagree';
+  constructor(
+    readonly first: StageResult,
+    readonly second: StageResult,
+  ) {
+    const said = (r: StageResult) => `${r.method} list ${r.orbits} orbits (set ${r.set ?? 'not kept'})`;
+    super(`two methods disagree at n = ${first.dimension}: ${said(first)}, ${said(second)}`);
+  }
+}
+
+/** @throws MethodsDisagree */
+export function withSecondOpinion(plan: Plan, conclusion: Conclusion, results: readonly StageResult[]): Step {
+  const carrier = conclusion.listComplete ? (conclusion.listStage ?? conclusion.exclusion?.stage) : undefined;
+  const first = results.find((r) => r.no === carrier);
+  if (first === undefined) return { conclusion };
+  const second = results.find((r) => r.repeats === first.no);
+  if (second === undefined) {
+    const method = otherMethod(plan, first);
+    if (method === null) return { conclusion };
+    return {
+      stage: {
+        no: results.length,
+        dimension: first.dimension,
+        purpose: 'all',
+        whole: first.whole,
+        method,
+        why: `Second opinion: ${method}.`,
+        repeats: first.no,
+      },
+    };
+  }
+  if (first.orbits !== second.orbits || first.set !== second.set) throw new MethodsDisagree(first, second);
+  return {
+    conclusion: {
+      ...conclusion,
+      listStage: conclusion.listStage === null ? null : second.no,
+      secondStage: first.no,
+      exclusion:
+        conclusion.exclusion?.stage === first.no && conclusion.listStage === null
+          ? { ...conclusion.exclusion, stage: second.no }
+          : conclusion.exclusion,
+    },
+  };
+}
+
+/** Frames where n − r ≤ 1, else columns, against rows; rows against both. Null where no other can. */
+function otherMethod(plan: Plan, first: StageResult): Method | null {
+  const can = (method: Method) =>
+    method !== first.method && whyNot(method, plan, first.dimension, first.whole) === null;
+  const preferred: Method[] =
+    first.dimension - plan.order.length <= 1 ? ['frames', 'columns', 'rows'] : ['columns', ...METHODS];
+  if (first.method !== 'rows') return 'rows';
+  return preferred.find(can) ?? null;
+}
+
+const MASK = 0xffffffffffffffffn;
+
+/** A set of orbits as a number that does not depend on their order: the sum modulo 2^64 of a hash of each. */
+export class OrbitSet {
+  private sum = 0n;
+
+  add(orbit: FoundOrbit): void {
+    const columns = orbit.columns
+      .map(({ entries, count }) => {
+        const lead = entries.map(BigInt).find((x) => x !== 0n)!;
+        return `${lead < 0n ? entries.map((x) => -BigInt(x)).join(' ') : entries.join(' ')}*${count}`;
+      })
+      .sort();
+    let hash = 0xcbf29ce484222325n; // FNV-1a of 64 bits
+    for (const character of columns.join(';'))
+      hash = ((hash ^ BigInt(character.charCodeAt(0))) * 0x100000001b3n) & MASK;
+    this.sum = (this.sum + hash) & MASK;
+  }
+
+  toString(): string {
+    return this.sum.toString(16).padStart(16, '0');
+  }
+}
