@@ -6,6 +6,7 @@ import type { Lattice } from './build.ts';
 import { changemakerAnswer } from './test-changemaker.ts';
 import { complementAnswer, torsionIndex } from './test-complement.ts';
 import { cubiquityAnswer } from './test-cubiquity.ts';
+import { DoubleOrbitTest } from './test-double-orbits.ts';
 import { metaboliserAnswer, PairTest } from './test-pair.ts';
 
 export interface ListedEmbedding {
@@ -49,6 +50,8 @@ const OVER: Readonly<Record<string, (question: ListQuestion) => OverList>> = {
     if (dimension !== lattice.rank) return known({ applies: false, reason: 'n is not the rank' });
     return new PairTest(lattice);
   },
+  doubleOrbits: ({ lattice }) =>
+    lattice.rank === 0 ? known({ applies: false, reason: 'the rank is 0' }) : new DoubleOrbitTest(lattice),
 };
 
 const known = (answer: TestAnswer): OverList => ({ take: () => {}, answer: () => answer });
