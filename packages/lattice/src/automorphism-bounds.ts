@@ -3,7 +3,7 @@
 /** One table: name, bound, meaning. */
 export const AUTOMORPHISM_BOUNDS = {
   /** Rank of the reduced lattice. */
-  rank: 64,
+  rank: 100,
   /** Vectors up to sign on which the group is made to act. */
   vectors: 4_000,
   /** Entries tried while those vectors are listed. */

@@ -21,8 +21,8 @@ import {
   type BigMatrix,
   type ReadonlyBigMatrix,
 } from '@palmette/exact';
-import { AUTOMORPHISM_BOUNDS, BeyondBound } from './automorphism-bounds.ts';
-import { leastVectors, StepBudget, type LeastVectors } from './short-vectors.ts';
+import { AUTOMORPHISM_BOUNDS } from './automorphism-bounds.ts';
+import { leastVectors, StepBudget, tooManyVectors, type LeastVectors } from './short-vectors.ts';
 
 export interface InvariantVector {
   readonly coordinates: readonly bigint[];
@@ -95,7 +95,7 @@ function shortestAbove(
     const form = restricted(gram, basis);
     const bound = form.at(-1)!.at(-1)!;
     const left = maxVectors - out.length;
-    if (left <= 0) throw new BeyondBound(`more than ${AUTOMORPHISM_BOUNDS.vectors} short vectors up to sign`);
+    if (left <= 0) throw tooManyVectors();
     out.push(...multiply(leastVectors(form, { bound, coset: true, maxVectors: left, budget }).vectors, basis));
   }
   return out;

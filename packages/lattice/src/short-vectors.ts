@@ -3,7 +3,7 @@
  * form itself, last basis vector first (Fincke–Pohst). Every list is up to sign and in coordinates of the given basis.
  */
 import type { ReadonlyBigMatrix } from '@palmette/exact';
-import { BeyondBound } from './automorphism-bounds.ts';
+import { AUTOMORPHISM_BOUNDS, BeyondBound } from './automorphism-bounds.ts';
 import { listIntegerPoints, type Projections } from './integer-points.ts';
 
 export interface LeastVectors {
@@ -18,6 +18,7 @@ export interface LeastOptions {
   readonly wanted?: (vector: readonly bigint[]) => boolean;
   /** Only vectors whose last coordinate is 1: the coset of the last basis vector. */
   readonly coset?: boolean;
+  /** How many more vectors there may be. */
   readonly maxVectors: number;
   readonly budget: StepBudget;
 }
@@ -63,10 +64,15 @@ export function leastVectors(
       },
     );
     budget.spend(steps, end !== 'too many');
-    if (vectors.length > maxVectors) throw new BeyondBound(`more than ${maxVectors} short vectors up to sign`);
+    if (vectors.length > maxVectors) throw tooManyVectors();
     settled = end === 'listed';
   }
   return { norm, vectors };
+}
+
+/** The bound on vectors is one for all layers together. */
+export function tooManyVectors(): BeyondBound {
+  return new BeyondBound(`more than ${AUTOMORPHISM_BOUNDS.vectors} short vectors up to sign`);
 }
 
 /** Leading minors and the integers λ_ji = d_(i+1)·μ_ji (Cohen, section 2.6.3), in the order of the listing. */
