@@ -65,11 +65,16 @@ class StabiliserChain {
   private readonly separated: Int32Array;
   /** Of the matrix whose rows are the base. */
   private readonly basis: RationalInverse;
+  /** For each vector up to sign 1 if it is not orthogonal to all of the base. */
+  private readonly touched: Uint8Array;
+  private readonly products: Float64Array;
   private readonly dependent = new Set<number>();
 
   constructor(private readonly gram: ReadonlyBigMatrix) {
     this.set = new VectorSet(gram, invariantVectors(gram));
     this.path = new CellPath(this.set);
+    this.touched = new Uint8Array(this.set.count / 2);
+    this.products = new Float64Array(this.set.count / 2);
     this.cells = [this.set.colours];
     const span = new Span();
     for (let next = this.nextOfBase(span); next !== null; next = this.nextOfBase(span)) {
@@ -88,7 +93,7 @@ class StabiliserChain {
     for (let k = this.base.length - 1; k >= 0; k -= 1) {
       const cell = this.cells[k]!;
       const own = cell[this.base[k]!]!;
-      const members = Array.from(cell.keys()).filter((v) => cell[v] === own);
+      const members = membersOf(own, cell);
       let orbit = orbitOf(this.base[k]!, permutations);
       const excluded = new Set<number>();
       for (const w of members) {
@@ -108,18 +113,26 @@ class StabiliserChain {
   }
 
   /**
-   * A vector of the smallest cell that has one outside the span of the base (added to the span), or null if the base
-   * spans. Cells of one vector come first: their image is forced, and they split other cells.
+   * The next vector of the base, outside the span of the base (and added to it), or null if the base spans. Cells of one
+   * vector come first: their image is forced, and they split other cells. Then vectors not orthogonal to all of the base,
+   * so that a wrong image is met soon; then the smallest cell.
    */
   private nextOfBase(span: Span): number | null {
     if (span.dimension === this.gram.length) return null;
     const cells = this.cells.at(-1)!;
     const sizes = new Int32Array(this.set.count);
     for (const c of cells) sizes[c]! += 1;
-    const bySize = Array.from(cells.keys()).sort((v, w) => sizes[cells[v]!]! - sizes[cells[w]!]! || v - w);
-    for (const v of bySize) {
+    const delay = (v: number) => {
+      const size = sizes[cells[v]!]!;
+      return size === 1 || this.touched[v >> 1] ? size : size + this.set.count;
+    };
+    for (const v of Array.from(cells.keys()).sort((a, b) => delay(a) - delay(b) || a - b)) {
       if (this.dependent.has(v)) continue;
-      if (span.add(this.set.coordinates(v))) return v;
+      if (span.add(this.set.coordinates(v))) {
+        this.set.products(v, this.products);
+        this.products.forEach((x, i) => (this.touched[i] ||= x === 0 ? 0 : 1));
+        return v;
+      }
       this.dependent.add(v);
     }
     throw new Error('the invariant vectors do not span');
@@ -149,7 +162,7 @@ class StabiliserChain {
       at += 1;
       cells[at] = next;
       const own = this.cells[at]![this.base[at]!]!;
-      candidates[at] = Array.from(next.keys()).filter((v) => next[v] === own);
+      candidates[at] = membersOf(own, next);
     }
     return null;
   }
@@ -169,6 +182,12 @@ class StabiliserChain {
     if (image.some((row, i) => row.some((x, j) => x !== this.gram[i]![j]))) return null;
     return { matrix, permutation };
   }
+}
+
+function membersOf(cell: number, cells: Int32Array): number[] {
+  const members: number[] = [];
+  for (let v = cells.indexOf(cell); v >= 0; v = cells.indexOf(cell, v + 1)) members.push(v);
+  return members;
 }
 
 function orbitOf(start: number, permutations: readonly Permutation[]): Set<number> {
