@@ -1,7 +1,6 @@
 /** Double orbits against published counts, and against the sublattices of Z^n that the embeddings have as images. */
 import {
   bigMatrix,
-  determinant,
   dot,
   hermiteBasis,
   multiply,
@@ -11,15 +10,7 @@ import {
 } from '@palmette/exact';
 import { describe, expect, it } from 'vitest';
 import { buildLattice, rootLatticeSource, TestsOnList, type Lattice } from './index.ts';
-
-/** Small random integers from a fixed seed (multiplicative congruential, Lehmer). */
-function source(seed: number): (low: number, high: number) => number {
-  let state = seed;
-  return (low, high) => {
-    state = (state * 48_271) % 2_147_483_647;
-    return low + (state % (high - low + 1));
-  };
-}
+import { seededIntegers, seededProduct } from './seeded-integers.ts';
 
 function vectorsOfNorm(norm: number, n: number): bigint[][] {
   if (n === 0) return norm === 0 ? [[]] : [];
@@ -141,15 +132,12 @@ describe('double orbits', () => {
   });
 
   it('are the images up to signed permutations, on random lattices of rank 1 to 3 in Z^n, n ≤ 4', () => {
-    const random = source(77);
-    let [tried, joined] = [0, 0];
-    while (tried < 80) {
+    const random = seededIntegers(77);
+    let joined = 0;
+    for (let trial = 0; trial < 80; trial += 1) {
       const rank = random(1, 3);
       const n = random(rank, 4);
-      const b = Array.from({ length: rank }, () => Array.from({ length: n }, () => BigInt(random(-2, 2))));
-      const gram = multiply(b, transpose(b));
-      if (determinant(gram) === 0n) continue;
-      tried += 1;
+      const gram = seededProduct(random, rank, n);
       const list = orbits(gram, n);
       const { count, representatives } = doubleOrbits(ofMatrix(gram), list, n);
       expect({ gram, n, count }).toEqual({ gram, n, count: String(imagesUpToSymmetry(list, n)) });

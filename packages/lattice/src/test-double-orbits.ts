@@ -20,9 +20,9 @@ import type { ListedEmbedding, TestAnswer } from './tests-on-list.ts';
 
 /** Bounds on the list; the group has its own. */
 const MAX = {
-  orbits: 500_000,
+  orbits: 200_000,
   /** Columns kept, over all orbits. */
-  columns: 5_000_000,
+  columns: 2_000_000,
   /** Columns of all orbits times generators. */
   moves: 50_000_000,
 } as const;
