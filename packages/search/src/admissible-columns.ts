@@ -14,12 +14,19 @@ import type { DualForm } from './dual-form.ts';
 import { exactGap } from './dual-form.ts';
 import { smallestResidual } from './order.ts';
 
+/** Which admissible columns are kept: all; those with cᵀW⁻¹c = 1; those whose gap F(c) is a square. */
+export type Kept = 'all' | 'unit' | 'square';
+
 export interface AdmissibleColumns {
+  /** Columns that are kept, and how many are admissible (for `unit`: how many have cᵀW⁻¹c = 1). */
   readonly count: number;
+  readonly admissible: number;
   /** Entries by rows of W: column j at j·rank. */
   readonly entries: Int32Array;
   /** F(c) = d·(1 − cᵀW⁻¹c), where the form is direct; else empty. */
   readonly gaps: Float64Array;
+  /** The root of F(c) where that is a square, else −1; empty unless squares were asked for. */
+  readonly roots: Float64Array;
   /** Values that were tried. */
   readonly steps: number;
 }
@@ -72,20 +79,18 @@ export interface ListingBounds {
   readonly vectors: number;
 }
 
-/**
- * @param unit only those with cᵀW⁻¹c = 1
- * @returns null where doubles are not precise enough or a bound is passed
- */
-export function admissibleColumns(form: DualForm, unit: boolean, bounds: ListingBounds): AdmissibleColumns | null {
+/** @returns null where doubles are not precise enough or a bound is passed */
+export function admissibleColumns(form: DualForm, kind: Kept, bounds: ListingBounds): AdmissibleColumns | null {
   const { rank } = form;
   if (rank > MAX_RANK) return null;
-  if (rank === 0) return { count: 0, entries: new Int32Array(0), gaps: new Float64Array(0), steps: 0 };
+  const kept = new KeptColumns(form, kind);
+  if (rank === 0) return kept.finish(0);
+  const unit = kind === 'unit';
   const at = profile(form);
   if (at === null) return null;
   const { order, mu, residual, error } = at;
   const slack = 2 * at.slack;
   const limit = 1 + slack;
-  const kept = new KeptColumns(form);
   const c = new Float64Array(rank);
   const centre = new Float64Array(rank);
   const high = new Float64Array(rank);
@@ -119,7 +124,7 @@ export function admissibleColumns(form: DualForm, unit: boolean, bounds: Listing
     }
     if ((!unit || sum > 1 - slack) && !(leading[depth] === 1 && c[depth] === 0)) {
       for (let k = 0; k < rank; k += 1) column[order[k]!] = c[k]!;
-      kept.offer(column, unit, sum < 1 - slack);
+      kept.offer(column, sum < 1 - slack);
       if (kept.count > bounds.vectors) return null;
     }
     c[depth]! += 1;
@@ -142,13 +147,22 @@ export function admissibleColumns(form: DualForm, unit: boolean, bounds: Listing
 /** Columns as they are found, decided by integers where doubles leave a doubt. */
 class KeptColumns {
   count = 0;
+  private admissible = 0;
   private entries = new Int32Array(1024);
   private gaps = new Float64Array(128);
-  constructor(private readonly form: DualForm) {}
+  private roots = new Float64Array(128);
+  private readonly squares: SquareGaps | null;
+  constructor(
+    private readonly form: DualForm,
+    private readonly kind: Kept,
+  ) {
+    this.squares = kind === 'square' && form.direct === null ? new SquareGaps(form) : null;
+  }
 
   /** @param inside the computed value is so far below 1 that the true one is, too */
-  offer(c: Int32Array, unit: boolean, inside: boolean): void {
+  offer(c: Int32Array, inside: boolean): void {
     const { rank, direct } = this.form;
+    const unit = this.kind === 'unit';
     let gap = 0;
     if (direct !== null) {
       gap = this.directGap(c, direct);
@@ -156,10 +170,20 @@ class KeptColumns {
     } else if (unit) {
       if (!this.gapIsZero(c)) return;
     } else if (!inside && !this.gapIsZero(c) && exactGap(this.form, c) < 0n) return;
+    this.admissible += 1;
+    let root = -1;
+    if (this.kind === 'square') {
+      root = this.squares === null ? squareRoot(gap) : this.squares.root(c);
+      if (root < 0) return;
+    }
     if ((this.count + 1) * rank > this.entries.length) this.entries = grown(this.entries, Int32Array);
-    if (this.count + 1 > this.gaps.length) this.gaps = grown(this.gaps, Float64Array);
+    if (this.count + 1 > this.gaps.length) {
+      this.gaps = grown(this.gaps, Float64Array);
+      this.roots = grown(this.roots, Float64Array);
+    }
     this.entries.set(c, this.count * rank);
     this.gaps[this.count] = gap;
+    this.roots[this.count] = root;
     this.count += 1;
   }
 
@@ -192,8 +216,10 @@ class KeptColumns {
     const { rank, direct } = this.form;
     return {
       count: this.count,
+      admissible: this.admissible,
       entries: this.entries.slice(0, this.count * rank),
       gaps: direct === null ? new Float64Array(0) : this.gaps.slice(0, this.count),
+      roots: this.kind === 'square' ? this.roots.slice(0, this.count) : new Float64Array(0),
       steps,
     };
   }
@@ -215,37 +241,40 @@ export function squareRoot(a: number): number {
 const SIEVE = [64, 63, 65, 11, 17];
 
 /**
- * The roots of the gaps that are squares, where the form is not direct: residues modulo a product of small moduli throw most
- * of the others out, integers decide the rest.
- * @returns for each column the root, or −1
+ * Which gaps are squares, where the form is not direct: residues modulo a product of small moduli throw most of the others out,
+ * integers decide the rest.
  */
-export function squareGaps(form: DualForm, columns: AdmissibleColumns): Float64Array {
-  const { rank } = form;
-  const modulus = SIEVE.reduce((a, b) => a * b, 1);
-  const big = BigInt(modulus);
-  const adjugate = Float64Array.from(form.adjugate.flat(), (x) => Number(((x % big) + big) % big));
-  const d = Number(form.determinant % big);
-  const squares = SIEVE.map((m) => {
-    const table = new Uint8Array(m);
-    for (let x = 0; x < m; x += 1) table[(x * x) % m] = 1;
-    return table;
-  });
-  return Float64Array.from({ length: columns.count }, (_, k) => {
-    const c = columns.entries.subarray(k * rank, (k + 1) * rank);
+class SquareGaps {
+  private readonly modulus = SIEVE.reduce((a, b) => a * b, 1);
+  private readonly adjugate: Float64Array;
+  private readonly determinant: number;
+  private readonly tables: Uint8Array[];
+  constructor(private readonly form: DualForm) {
+    const big = BigInt(this.modulus);
+    this.adjugate = Float64Array.from(form.adjugate.flat(), (x) => Number(((x % big) + big) % big));
+    this.determinant = Number(form.determinant % big);
+    this.tables = SIEVE.map((m) => {
+      const table = new Uint8Array(m);
+      for (let x = 0; x < m; x += 1) table[(x * x) % m] = 1;
+      return table;
+    });
+  }
+
+  /** The y ≥ 0 with y² = F(c), or −1. */
+  root(c: Int32Array): number {
+    const { modulus, adjugate, tables, form } = this;
+    const { rank } = form;
     let sum = 0;
-    for (let i = 0, at = 0; i < rank; i += 1) {
-      if (c[i] === 0) {
-        at += rank;
-        continue;
-      }
+    for (let i = 0; i < rank; i += 1) {
+      if (c[i] === 0) continue;
       let z = 0;
-      for (let j = 0; j < rank; j += 1, at += 1) z += adjugate[at]! * c[j]!;
+      for (let j = 0, at = i * rank; j < rank; j += 1, at += 1) z += adjugate[at]! * c[j]!;
       sum += c[i]! * (z % modulus);
     }
-    const gap = (((d - sum) % modulus) + modulus) % modulus;
-    if (SIEVE.some((m, i) => squares[i]![gap % m] === 0)) return -1;
+    const gap = (((this.determinant - sum) % modulus) + modulus) % modulus;
+    for (let i = 0; i < SIEVE.length; i += 1) if (tables[i]![gap % SIEVE[i]!] === 0) return -1;
     const exact = exactGap(form, c);
     const root = integerSqrt(abs(exact));
     return root * root === exact ? Number(root) : -1;
-  });
+  }
 }

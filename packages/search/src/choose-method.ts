@@ -24,7 +24,7 @@ export interface ChosenStage {
 /** Units of work (16 listing steps each) that each method gets in a round. */
 const ROUNDS = [4_000, 60_000, 600_000];
 /** Values that may be tried for the list of columns, for one unit of work of the round. */
-const LISTING_STEPS = 16;
+const LISTING_STEPS = 160;
 const PROBES = 60;
 const PROBE_STEPS = 1_500_000;
 /** Columns answer `any` and large n; below this excess frames and rows are better. */
@@ -71,12 +71,8 @@ function mayTry(method: Method, plan: Plan, stage: Stage): boolean {
 }
 
 function advance(plan: Plan, trial: Trial, units: number): Advance {
-  const { method, dimension } = trial.stage;
   if (trial.run === null) {
-    if (method !== 'rows') {
-      const unit = method === 'frames' && dimension === rankOf(plan);
-      if (columnsOf(plan, unit, units * LISTING_STEPS) === null) return 'more';
-    }
+    if (trial.stage.method !== 'rows' && columnsOf(plan, trial.stage, units * LISTING_STEPS) === null) return 'more';
     trial.run = openRun(plan, trial.stage, { from: [], to: null });
   }
   return trial.run.advance(units);
@@ -118,12 +114,8 @@ function stepsPerNode(run: Run): number {
 
 function forcedStage(plan: Plan, stage: Stage, method: Method): Stage {
   const reason = whyNot(method, plan, stage.dimension, stage.whole);
-  if (
-    reason === null &&
-    method !== 'rows' &&
-    columnsOf(plan, method === 'frames' && stage.dimension === rankOf(plan)) === null
-  )
-    throw new MethodCannot('the admissible columns are too many to be listed');
+  if (reason === null && method !== 'rows' && columnsOf(plan, { ...stage, method }) === null)
+    throw new MethodCannot('there are too many admissible columns to list');
   if (reason === null) return { ...stage, method, why: `${named(method, plan)}, as the question asks.` };
   if ('least' in plan.target) return { ...stage, method: 'rows', why: `Rows, ${plan.why}: ${reason}.` };
   throw new MethodCannot(reason);

@@ -1,5 +1,5 @@
 /** From an orbit in the working Gram to an embedding in the basis of the source, and the basis that a certificate names. */
-import { multiply, transpose, type BigMatrix } from '@palmette/exact';
+import { lllGram, multiply, transpose, type BigMatrix, type ReadonlyBigMatrix } from '@palmette/exact';
 import type { FoundOrbit } from './found.ts';
 import { fromPlanMatrix, type Plan } from './plan.ts';
 
@@ -44,6 +44,18 @@ export function composeBases(change: Basis, radical: Basis | null): Basis {
   return {
     matrix: multiply(radical.matrix, widen(change.matrix)),
     inverse: multiply(widen(change.inverse), radical.inverse),
+  };
+}
+
+/** A basis of short vectors (LLL) of a reduced lattice: its Gram matrix, and how it is reached from the source's basis. */
+export function shortBasis(
+  gram: ReadonlyBigMatrix,
+  radical: Basis | null,
+): { readonly gram: BigMatrix; readonly basis: Basis } {
+  const reduction = lllGram(gram);
+  return {
+    gram: reduction.gram,
+    basis: composeBases({ matrix: reduction.change, inverse: reduction.inverse }, radical),
   };
 }
 

@@ -4,7 +4,7 @@
  * F(a), whose T is (F(a)·T(c, c') + T(a, c)·T(a, c')) / d (Sylvester's identity).
  */
 import type { AdmissibleColumns } from './admissible-columns.ts';
-import { squareGaps, squareRoot } from './admissible-columns.ts';
+import { squareRoot } from './admissible-columns.ts';
 import { roundedQuotient, type DualForm, type Residues } from './dual-form.ts';
 
 export interface FrameList {
@@ -24,13 +24,11 @@ export function unitFrameList(columns: AdmissibleColumns): FrameList {
   return { count: columns.count, entries: columns.entries, y: null, mirror: null, under: null };
 }
 
-/** F1 for W itself: the columns whose gap is a square, and (0, √d) if d is one. */
+/** F1 for W itself: the columns whose gap is a square (all of `columns`), and (0, √d) if d is one. */
 export function extendedFrameList(form: DualForm, columns: AdmissibleColumns): FrameList {
   const { rank } = form;
-  const roots =
-    form.direct === null ? squareGaps(form, columns) : Float64Array.from(columns.gaps, (gap) => squareRoot(gap));
   const builder = new ListBuilder(rank, null);
-  for (let k = 0; k < columns.count; k += 1) if (roots[k]! >= 0) builder.add(columns.entries, k * rank, roots[k]!, 0);
+  for (let k = 0; k < columns.count; k += 1) builder.add(columns.entries, k * rank, columns.roots[k]!, 0);
   const zero = exactRoot(form.determinant);
   if (zero >= 0) builder.add(new Int32Array(rank), 0, zero, 0);
   return builder.list();

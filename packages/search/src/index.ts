@@ -2,7 +2,7 @@ export { compareAddresses, type Address, type Interval } from './address.ts';
 export { chooseMethod, MethodCannot, type ChosenStage } from './choose-method.ts';
 export { choosePlan, type SearchQuestion } from './choose-plan.ts';
 export { cover, type CoverPiece } from './cover.ts';
-export { composeBases, embeddingMatrix, orbitSize, treeBasis, type Basis, type Embedding } from './embedding.ts';
+export { embeddingMatrix, orbitSize, shortBasis, treeBasis, type Basis, type Embedding } from './embedding.ts';
 export { estimate, type Estimate, type ProbeOptions } from './estimate.ts';
 export type { FoundOrbit } from './found.ts';
 export { METHODS, type Method } from './method.ts';

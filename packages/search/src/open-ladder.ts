@@ -1,6 +1,6 @@
 /** The ladder of a stage by its method, and what all runs of a plan share: the working form, the dual, its admissible columns. */
 import { fromPlanMatrix, type Plan } from './plan.ts';
-import { admissibleColumns, type AdmissibleColumns } from './admissible-columns.ts';
+import { admissibleColumns, type AdmissibleColumns, type Kept } from './admissible-columns.ts';
 import { ColumnsLadder } from './columns-ladder.ts';
 import { dualForm, type DualForm } from './dual-form.ts';
 import { rootsFit } from './frame-list.ts';
@@ -20,8 +20,8 @@ const MAX_DUAL_RANK = 160;
 interface Prepared {
   rows?: WorkingForm;
   dual?: DualForm | null;
-  /** What was listed within so many steps: [all, those of norm 1]. */
-  readonly columns: [Tried, Tried];
+  /** What was listed within so many steps. */
+  readonly columns: Map<Kept, Tried>;
   readonly frames: Map<number, FrameRoot>;
 }
 
@@ -30,13 +30,12 @@ interface Tried {
   readonly columns: AdmissibleColumns | null;
 }
 
-const UNTRIED: Tried = { steps: 0, columns: null };
 const prepared = new WeakMap<Plan, Prepared>();
 
 function preparedFor(plan: Plan): Prepared {
   const known = prepared.get(plan);
   if (known !== undefined) return known;
-  const fresh: Prepared = { frames: new Map(), columns: [UNTRIED, UNTRIED] };
+  const fresh: Prepared = { frames: new Map(), columns: new Map() };
   prepared.set(plan, fresh);
   return fresh;
 }
@@ -51,25 +50,32 @@ export function dualOf(plan: Plan): DualForm | null {
   return at.dual;
 }
 
+type StageOfColumns = Pick<Stage, 'method' | 'dimension'>;
+
+/** The columns that a stage of frames or of columns is built from. */
+function keptBy(plan: Plan, stage: StageOfColumns): Kept {
+  const excess = stage.dimension - rankOf(plan);
+  return stage.method === 'columns' || excess > 1 ? 'all' : excess === 1 ? 'square' : 'unit';
+}
+
 /**
- * The admissible columns of a plan, listed once.
- * @param unit those with cᵀW⁻¹c = 1
+ * The admissible columns that a stage is built from, listed once.
  * @returns null where doubles are not precise enough, or there are too many within `steps`
  */
-export function columnsOf(plan: Plan, unit: boolean, steps = MAX_LISTING_STEPS): AdmissibleColumns | null {
-  const at = preparedFor(plan);
-  const which = unit ? 1 : 0;
-  const known = at.columns[which];
-  if (known.columns !== null || steps <= known.steps) return known.columns;
+export function columnsOf(plan: Plan, stage: StageOfColumns, steps = MAX_LISTING_STEPS): AdmissibleColumns | null {
+  const { columns } = preparedFor(plan);
+  const kind = keptBy(plan, stage);
+  const known = columns.get(kind);
+  if (known !== undefined && (known.columns !== null || steps <= known.steps)) return known.columns;
   const form = dualOf(plan);
-  const columns = form === null ? null : admissibleColumns(form, unit, { steps, vectors: MAX_COLUMNS });
-  at.columns[which] = { steps, columns };
-  return columns;
+  const listed = form === null ? null : admissibleColumns(form, kind, { steps, vectors: MAX_COLUMNS });
+  columns.set(kind, { steps, columns: listed });
+  return listed;
 }
 
 /** Admissible columns that a finished stage of frames or columns listed: the `vectors` of its tree. */
 export function countColumns(plan: Plan, stage: Stage): number {
-  return columnsOf(plan, stage.method === 'frames' && stage.dimension === rankOf(plan))?.count ?? 0;
+  return columnsOf(plan, stage)?.admissible ?? 0;
 }
 
 /** Why a method cannot list the embeddings in Z^n, in words, or null if it can. */
@@ -90,7 +96,7 @@ export function openLadder(plan: Plan, stage: Stage): Ladder {
   if (stage.method === 'rows' || rankOf(plan) === 0)
     return openRowLadder((at.rows ??= workingForm(plan)), stage.dimension);
   const excess = stage.dimension - rankOf(plan);
-  const columns = columnsOf(plan, stage.method === 'frames' && excess === 0);
+  const columns = columnsOf(plan, stage);
   if (columns === null) throw new RangeError(`the admissible columns cannot be listed for ${stage.method}`);
   if (stage.method === 'columns') return new ColumnsLadder(dualOf(plan)!, columns, stage.dimension);
   if (!at.frames.has(excess)) at.frames.set(excess, frameRoot(dualOf(plan)!, columns, excess));

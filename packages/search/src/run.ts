@@ -79,15 +79,19 @@ export class Run {
       this.enter();
       if (this.foundOne()) return 'found';
     }
-    for (let left = nodes * STEPS_PER_NODE; left > 0;) {
+    const { ladder } = this;
+    // descending and opening a node costs steps too, and a node at least one
+    for (let left = nodes * STEPS_PER_NODE, before = ladder.steps; left > 0;) {
+      left -= ladder.steps - before;
+      before = ladder.steps;
+      if (left <= 0) break;
       const depth = this.path.length;
       if (this.atLeaf) {
         if (!this.up()) return this.end();
         continue;
       }
-      const before = this.ladder.steps;
-      const listed = this.ladder.next(depth, left);
-      left -= this.ladder.steps - before + 1;
+      const listed = ladder.next(depth, left);
+      left -= 1;
       if (listed === LISTED.paused) return 'more';
       if (listed === LISTED.done) {
         if (!this.up()) return this.end();

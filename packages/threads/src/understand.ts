@@ -1,7 +1,6 @@
 /** From the text of a question to its lattice, reduced basis and arithmetic. */
 import { createHash } from 'node:crypto';
 import { canonicalQuestion, readQuestion, Refusal, type CanonicalQuestion, type Question } from '@palmette/contracts';
-import { lllGram } from '@palmette/exact';
 import {
   arithmeticGround,
   buildLattice,
@@ -12,7 +11,7 @@ import {
   type ColumnGround,
   type Lattice,
 } from '@palmette/lattice';
-import { composeBases, type Basis } from '@palmette/search';
+import { shortBasis, type Basis } from '@palmette/search';
 
 export interface Understood {
   readonly question: Question;
@@ -22,7 +21,7 @@ export interface Understood {
   /** Why the lattice cannot embed in Z^n (null: in any) by arithmetic alone, or null. */
   readonly arithmetic: (n: number | null) => ArithmeticGround | ColumnGround | null;
   /** The basis in which the admissible columns were listed: that of a ground `column`. */
-  readonly shortBasis: () => Basis | null;
+  readonly shortBasis: () => Basis;
   /** The certificate is one line whatever its size. */
   readonly oneLine: boolean;
   /** 32 bits of the canonical question's hash: seeds every probe. */
@@ -45,8 +44,8 @@ export function understand(document: string, options: { readonly oneLine?: boole
   const canonical = canonicalQuestion(question);
   const reduced = reducedBasis(lattice);
   const known = new Map<number | null, ArithmeticGround | ColumnGround | null>();
-  let short: ReturnType<typeof lllGram> | null = null;
-  const reduction = () => (short ??= lllGram(reduced.gram));
+  let shortest: ReturnType<typeof shortBasis> | null = null;
+  const short = () => (shortest ??= shortBasis(reduced.gram, reduced.basis));
   return {
     question,
     canonical,
@@ -56,14 +55,14 @@ export function understand(document: string, options: { readonly oneLine?: boole
       if (!known.has(n)) known.set(n, (n === null ? null : arithmeticGround(lattice, n)) ?? column(n));
       return known.get(n)!;
     },
-    shortBasis: () => composeBases({ matrix: reduction().change, inverse: reduction().inverse }, reduced.basis),
+    shortBasis: () => short().basis,
     oneLine: options.oneLine === true,
     seed: Number.parseInt(sha256(JSON.stringify(canonical)).slice(0, 8), 16),
   };
 
   function column(n: number | null): ColumnGround | null {
     if (lattice.rank > COLUMN_RANK) return null;
-    const ground = columnGround(reduction().gram, n, COLUMN_STEPS);
+    const ground = columnGround(short().gram, n, COLUMN_STEPS);
     return ground === 'too many' ? null : ground;
   }
 }
