@@ -35,7 +35,7 @@ export function legOfTotal(length: number, random: Random): number[] {
 
 /** Gram of E8 + ⟨1⟩^(size − 8), or of ⟨1⟩^size. */
 export function unimodular(size: number, withE8: boolean): number[][] {
-  const gram = Array.from({ length: size }, (_, i) => Array.from({ length: size }, (_, j) => (i === j ? 1 : 0)));
+  const gram = Array.from({ length: size }, (_, i) => Array.from({ length: size }, (_, j) => Number(i === j)));
   if (!withE8) return gram;
   const join = (i: number, j: number) => (gram[i]![j] = gram[j]![i] = -1);
   for (let i = 0; i < 8; i += 1) gram[i]![i] = 2;

@@ -17,7 +17,7 @@ const MOST_OUTPUT_BYTES = 2 ** 30;
 
 export function timedChild(
   command: readonly string[],
-  limits: { readonly cpuSeconds: number; readonly input?: string; readonly cpus?: string },
+  limits: { readonly cpuSeconds: number; readonly input?: string | Uint8Array; readonly cpus?: string },
 ): TimedChild {
   const clock = Math.ceil(3 * limits.cpuSeconds);
   const pinned = limits.cpus === undefined ? command : ['taskset', '-c', limits.cpus, ...command];
