@@ -237,6 +237,13 @@ export function squareRoot(a: number): number {
   return y * y === a ? y : -1;
 }
 
+/** 1 at the squares modulo m, 0 elsewhere. */
+export function squaresModulo(m: number): Uint8Array {
+  const table = new Uint8Array(m);
+  for (let x = 0; x < m; x += 1) table[(x * x) % m] = 1;
+  return table;
+}
+
 /** Moduli with few squares; their product is below 2^26. */
 const SIEVE = [64, 63, 65, 11, 17];
 
@@ -253,11 +260,7 @@ class SquareGaps {
     const big = BigInt(this.modulus);
     this.adjugate = Float64Array.from(form.adjugate.flat(), (x) => Number(((x % big) + big) % big));
     this.determinant = Number(form.determinant % big);
-    this.tables = SIEVE.map((m) => {
-      const table = new Uint8Array(m);
-      for (let x = 0; x < m; x += 1) table[(x * x) % m] = 1;
-      return table;
-    });
+    this.tables = SIEVE.map(squaresModulo);
   }
 
   /** The y ≥ 0 with y² = F(c), or −1. */

@@ -8,8 +8,7 @@
  * rest stays. At least as many columns are needed as the rank of R; where no more are left, only those with F(c) = 0 are possible.
  */
 import type { AdmissibleColumns } from './admissible-columns.ts';
-import { roundedQuotient, type DualForm } from './dual-form.ts';
-import { apply, dot } from './frame-list.ts';
+import { apply, dot, roundedQuotient, type DualForm } from './dual-form.ts';
 import { allPlaces, emptyLevel, VectorLadder, type VectorLevel } from './vector-ladder.ts';
 
 interface ColumnsLevel extends VectorLevel {

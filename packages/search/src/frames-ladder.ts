@@ -10,15 +10,9 @@
  */
 import type { AdmissibleColumns } from './admissible-columns.ts';
 import type { DualForm } from './dual-form.ts';
-import {
-  apply,
-  dot,
-  extendedFrameList,
-  frameListUnder,
-  Orthogonality,
-  unitFrameList,
-  type FrameList,
-} from './frame-list.ts';
+import { extendedFrameList, frameListUnder, unitFrameList, type FrameList } from './frame-list.ts';
+import { Orthogonality } from './orthogonality.ts';
+import { underColumn, type UnderColumn } from './under-column.ts';
 import { allPlaces, emptyLevel, VectorLadder, type VectorLevel } from './vector-ladder.ts';
 
 interface FramesLevel extends VectorLevel {
@@ -45,8 +39,7 @@ export function frameRoot(form: DualForm, columns: AdmissibleColumns, excess: nu
 
 export class FramesLadder extends VectorLadder<FramesLevel> {
   private readonly orthogonality: Orthogonality;
-  private readonly image: Float64Array;
-  private readonly products: Float64Array;
+  private readonly under: UnderColumn | null;
 
   constructor(
     private readonly root: FrameRoot,
@@ -54,8 +47,7 @@ export class FramesLadder extends VectorLadder<FramesLevel> {
   ) {
     super(root.form.rank, dimension);
     this.orthogonality = new Orthogonality(root.form);
-    this.image = new Float64Array(root.form.rank);
-    this.products = new Float64Array(root.list === null ? root.columns.count : 0);
+    this.under = root.list === null ? underColumn(root.form, root.columns) : null;
     const level = this.level(0);
     level.list = root.list;
     level.entries = (root.list ?? root.columns).entries;
@@ -122,20 +114,17 @@ export class FramesLadder extends VectorLadder<FramesLevel> {
   /** F2: the column leaves full rank (F(a) > 0) and a frame is looked for, or one rank less and another column is chosen. */
   private writeUnderColumn(from: FramesLevel, to: FramesLevel, chosen: number): void {
     const { form, columns } = this.root;
-    const { rank, image, products } = this;
-    apply(form.direct!, columns.entries, chosen * rank, rank, image);
-    const gap = columns.gaps[chosen]!;
+    const under = this.under!;
+    const unit = under.aim(chosen);
     let count = 0;
     for (let p = 0; p < from.count; p += 1) {
       if (this.isOut(from, p)) continue;
       const candidate = from.candidates[p]!;
-      const t = dot(image, columns.entries, candidate * rank, rank);
-      if (gap === 0 && t !== 0) continue;
-      products[candidate] = t;
+      if (unit && !under.meets(candidate)) continue;
       to.candidates[count] = candidate;
       count += 1;
     }
-    to.list = gap === 0 ? null : frameListUnder(form, columns, to.candidates, count, gap, products);
+    to.list = unit ? null : frameListUnder(form, columns, to.candidates, count, under);
     to.settled = false;
     this.steps += count;
     if (to.list === null) {

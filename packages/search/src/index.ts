@@ -7,7 +7,7 @@ export { estimate, type Estimate, type ProbeOptions } from './estimate.ts';
 export type { FoundOrbit } from './found.ts';
 export { METHODS, type Method } from './method.ts';
 export { countColumns, whyNot } from './open-ladder.ts';
-export type { Plan, PlanTarget } from './plan.ts';
+export { readPlan, type Plan, type PlanTarget } from './plan.ts';
 export { MethodsDisagree, OrbitSet } from './second-opinion.ts';
 export { openRun, Run, type Advance } from './run.ts';
 export {

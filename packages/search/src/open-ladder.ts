@@ -10,8 +10,8 @@ import type { Method } from './method.ts';
 import type { Stage } from './stages.ts';
 import { workingForm, type WorkingForm } from './working-form.ts';
 
-/** Most columns that are kept: 4 bytes for each entry, 8 for each gap. */
-export const MAX_COLUMNS = 2_000_000;
+/** Memory that a list of columns may take: 4 bytes for each entry, 16 beside them. Above it the method is given up. */
+const MAX_LIST_BYTES = 256 * 1024 * 1024;
 /** Values that are tried while they are listed: some seconds. */
 const MAX_LISTING_STEPS = 200_000_000;
 /** Above this rank the dual is not computed: it costs the cube of the rank in big integers. */
@@ -68,7 +68,10 @@ export function columnsOf(plan: Plan, stage: StageOfColumns, steps = MAX_LISTING
   const known = columns.get(kind);
   if (known !== undefined && (known.columns !== null || steps <= known.steps)) return known.columns;
   const form = dualOf(plan);
-  const listed = form === null ? null : admissibleColumns(form, kind, { steps, vectors: MAX_COLUMNS });
+  const listed =
+    form === null
+      ? null
+      : admissibleColumns(form, kind, { steps, vectors: Math.floor(MAX_LIST_BYTES / (4 * rankOf(plan) + 16)) });
   columns.set(kind, { steps, columns: listed });
   return listed;
 }
@@ -85,9 +88,9 @@ export function whyNot(method: Method, plan: Plan, dimension: number, whole: boo
   if (method === 'frames' && (whole || excess < 0 || excess > 2)) return 'frames need n = rank, rank + 1 or rank + 2';
   const form = dualOf(plan);
   if (form === null) return `the dual of this form is not listed (rank above ${MAX_DUAL_RANK} or entries above 2^15)`;
-  if (form.direct === null && (method === 'columns' || excess === 2))
+  if (form.direct === null && method === 'columns')
     return 'the determinant of this form is too big for doubles to be exact';
-  if (method === 'frames' && excess === 1 && !rootsFit(form)) return 'the determinant of this form is above 2^100';
+  if (method === 'frames' && excess > 0 && !rootsFit(form)) return 'the determinant of this form is above 2^100';
   return null;
 }
 

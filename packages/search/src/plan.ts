@@ -48,6 +48,17 @@ export function fromPlanMatrix(matrix: PlanMatrix): BigMatrix {
   return out;
 }
 
+let lastRead: { readonly text: string; readonly plan: Plan } | null = null;
+
+/**
+ * A plan from its JSON text. The same text gives the same object while it is the last one read, so that what a thread has prepared for a
+ * plan (lists of columns) serves all parcels of it.
+ */
+export function readPlan(text: string): Plan {
+  if (lastRead?.text !== text) lastRead = { text, plan: JSON.parse(text) as Plan };
+  return lastRead.plan;
+}
+
 export function planGram(plan: Plan): BigMatrix {
   return fromPlanMatrix(plan.gram);
 }

@@ -162,7 +162,15 @@ export abstract class VectorLadder<L extends VectorLevel> {
   }
 
   get bytes(): number {
-    return this.levels.reduce((sum, l) => sum + 4 * (l.candidates.length + l.branch.length) + 8 * this.rank + 64, 0);
+    return this.levels.reduce(
+      (sum, l, depth) =>
+        sum +
+        (depth > 0 && this.levels[depth - 1]!.entries === l.entries ? 0 : l.entries.byteLength) +
+        4 * (l.candidates.length + l.branch.length) +
+        8 * this.rank +
+        64,
+      0,
+    );
   }
 }
 

@@ -1,5 +1,5 @@
 /** One question on all cores of this machine, without server or database: the command line's `answer`. */
-import type { Plan } from '@palmette/search';
+import { readPlan } from '@palmette/search';
 import { CheckFailed } from './answer-alone.ts';
 import { certifyOpen } from './certify.ts';
 import { choose, stageResult } from './choose.ts';
@@ -82,7 +82,7 @@ async function runStages(
     if (end.kind === 'spent') {
       const fixed = fixedDimension(understood);
       const listed = fixed === null && !('any' in understood.question.target) ? [] : unpackFound(end.chunks);
-      const open = certifyOpen(understood, { dimension: fixed, plan: JSON.parse(plan) as Plan, found: listed });
+      const open = certifyOpen(understood, { dimension: fixed, plan: readPlan(plan), found: listed });
       return { kind: 'answer', settled: false, certificate: open.certificate, reason: end.reason! };
     }
     const results = [...ahead.results, stageResult(stage, end.counts[0]!, end.kind === 'done', null)];

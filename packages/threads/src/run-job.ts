@@ -7,7 +7,7 @@ import {
   splitCheck,
   type CheckWork,
 } from '@palmette/checker';
-import { nextStep, openRun, type FoundOrbit, type Plan, type StageResult } from '@palmette/search';
+import { nextStep, openRun, readPlan, type FoundOrbit, type StageResult } from '@palmette/search';
 import { answerAlone } from './answer-alone.ts';
 import { checkAtOnce } from './check-whole.ts';
 import { certify } from './certify.ts';
@@ -61,7 +61,7 @@ function run(job: Job, talk: ThreadTalk): JobEnd<Job> {
 
 function list(job: ListJob, talk: ThreadTalk): ListEnd {
   const run = openRun(
-    JSON.parse(job.plan) as Plan,
+    readPlan(job.plan),
     job.stage,
     { from: job.from, to: job.to },
     job.checkpoint ?? undefined,
@@ -72,7 +72,7 @@ function list(job: ListJob, talk: ThreadTalk): ListEnd {
 function assemble(job: AssembleJob): AssembleEnd {
   const meter = new CpuMeter();
   const understood = understand(job.document);
-  const plan = JSON.parse(job.plan) as Plan;
+  const plan = readPlan(job.plan);
   const found: FoundOrbit[] = unpackFound(job.found);
   const results = plan.secondOpinion ? withSet(job.results, found) : job.results;
   const step = nextStep(plan, results, understood.arithmetic);
