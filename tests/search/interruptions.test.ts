@@ -1,7 +1,17 @@
 /** Any number of interruptions, cuts and resumptions gives the same orbits in the same order and the same counters. */
 import { describe, expect, it } from 'vitest';
 import { buildLattice, readSourceText, reducedBasis } from '@palmette/lattice';
-import { choosePlan, cover, estimate, nextStep, openRun, type Interval, type Plan, type Stage } from '@palmette/search';
+import {
+  choosePlan,
+  cover,
+  estimate,
+  nextStep,
+  openRun,
+  type Interval,
+  type Method,
+  type Plan,
+  type Stage,
+} from '@palmette/search';
 
 function sequence(seed: number): (below: number) => number {
   let state = seed;
@@ -11,19 +21,26 @@ function sequence(seed: number): (below: number) => number {
   };
 }
 
-const CASES: readonly (readonly [string, number])[] = [
-  ['[5, 5, 5, 5, 5]', 2],
-  ['[4, 3, 5, 3, 4, 3]', 2],
-  ['D4', 2],
-  ['6 1 2; 1 7 3; 2 3 8', 3],
-  ['A7', 2],
-  ['P(3, 3, -15)', 2],
-  ['10', 6],
+const CASES: readonly (readonly [string, number, Method])[] = [
+  ['[5, 5, 5, 5, 5]', 2, 'rows'],
+  ['[4, 3, 5, 3, 4, 3]', 2, 'rows'],
+  ['D4', 2, 'rows'],
+  ['6 1 2; 1 7 3; 2 3 8', 3, 'rows'],
+  ['A7', 2, 'rows'],
+  ['P(3, 3, -15)', 2, 'rows'],
+  ['10', 6, 'rows'],
+  ['8 0 0 0; 0 8 0 0; 0 0 8 0; 0 0 0 8', 0, 'frames'],
+  ['4 0 0 0; 0 4 0 0; 0 0 4 0; 0 0 0 4', 1, 'frames'],
+  ['[5, 5, 5, 5, 5]', 2, 'frames'],
+  ['6 1 2; 1 7 3; 2 3 8', 2, 'frames'],
+  ['6 1 2; 1 7 3; 2 3 8', 3, 'columns'],
+  ['[4, 3, 5, 3, 4, 3]', 2, 'columns'],
+  ['4 0 0; 0 4 0; 0 0 4', 4, 'columns'],
 ];
 
-function problem(text: string, excess: number): { plan: Plan; stage: Stage } {
+function problem(text: string, excess: number, forced: Method): { plan: Plan; stage: Stage } {
   const { gram } = reducedBasis(buildLattice(text === '10' ? { kind: 'matrix', rows: [[10]] } : readSourceText(text)));
-  const plan = choosePlan({ gram, target: { excess }, scope: 'all', seed: 3 }, () => null);
+  const plan = choosePlan({ gram, target: { excess }, scope: 'all', forced, seed: 3 }, () => null);
   const step = nextStep(plan, [], () => null);
   if (!('stage' in step)) throw new Error('expected a stage');
   return { plan, stage: step.stage };
@@ -40,8 +57,8 @@ function whole(plan: Plan, stage: Stage): { found: string[]; nodes: bigint; orbi
   return { found: run.takeFound().map((o) => JSON.stringify(o)), nodes: run.nodes, orbits: run.orbits };
 }
 
-describe.each(CASES)('%s, excess %i', (text, excess) => {
-  const { plan, stage } = problem(text, excess);
+describe.each(CASES)('%s, excess %i, %s', (text, excess, method) => {
+  const { plan, stage } = problem(text, excess, method);
   const expected = whole(plan, stage);
 
   it('interrupted and cut at random', () => {
