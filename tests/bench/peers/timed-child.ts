@@ -36,7 +36,7 @@ export function timedChild(
   const stopped = child.status === null || child.status >= 124;
   return {
     cpuSeconds,
-    overLimit: stopped && (cpuSeconds >= 0.98 * limits.cpuSeconds || child.status === 124),
+    overLimit: stopped && (cpuSeconds >= 0.95 * limits.cpuSeconds || child.status === 124),
     status: child.status,
     stdout: child.stdout,
     stderr: stderr.slice(0, Math.max(0, stderr.lastIndexOf('\n'))).trim(),
