@@ -36,9 +36,18 @@ export function instance(
   return { name, ...rest, excess, document: { format: 'palmette.question/1', source, target: { excess }, scope } };
 }
 
-/** The chain, star or scrambled form of a rank: `made` embeds in Z^(rank + excess), `drawn` passes the arithmetic grounds. */
-export function drawSource(kind: 'chain' | 'star' | 'scrambled', rank: number, excess: number, made: boolean): Source {
-  const random = seededRandom(((rank * 8 + excess) * 2 + Number(made)) * 4 + kind.length);
+/**
+ * The chain, star or scrambled form of a rank: `made` embeds in Z^(rank + excess), `drawn` passes the arithmetic grounds.
+ * `variant` counts instances of the same kind.
+ */
+export function drawSource(
+  kind: 'chain' | 'star' | 'scrambled',
+  rank: number,
+  excess: number,
+  made: boolean,
+  variant = 0,
+): Source {
+  const random = seededRandom(((rank * 8 + excess) * 2 + Number(made)) * 4 + kind.length + variant * 2 ** 20);
   const draw = { chain: drawChain, star: drawStar, scrambled: drawScrambled }[kind];
   for (;;) {
     const source = draw(rank, excess, made, random);
