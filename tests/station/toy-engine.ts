@@ -2,7 +2,7 @@
 import { fileURLToPath } from 'node:url';
 import { MessageChannel, Worker } from 'node:worker_threads';
 import type { Engine } from '@palmette/station';
-import type { Job, JobEnd, JobMessage } from '@palmette/threads';
+import { reply, WORDS, type Job, type JobEnd, type JobMessage } from '@palmette/threads';
 
 const FILE = fileURLToPath(new URL('./toy-worker.mjs', import.meta.url));
 
@@ -20,7 +20,7 @@ export function openToyEngine(size: number): Engine {
     revisions: [1],
     run<J extends Job>(job: J, onMessage: (message: JobMessage) => void = () => {}) {
       const worker = idle.pop() ?? begin();
-      const words = new Int32Array(new SharedArrayBuffer(8));
+      const words = new Int32Array(new SharedArrayBuffer(4 * WORDS));
       const { port1, port2 } = new MessageChannel();
       const end = new Promise<JobEnd<J>>((resolve, reject) => {
         const exit = (code: number) => reject(new Error(`the thread ended with code ${code}`));
@@ -47,6 +47,7 @@ export function openToyEngine(size: number): Engine {
           Atomics.store(words, 1, recorded ? 1 : 2);
           Atomics.notify(words, 1);
         },
+        reply: (piece: Uint8Array | null) => reply(port1, words, piece),
         kill: () => void worker.terminate(),
       };
     },

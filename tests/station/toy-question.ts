@@ -19,6 +19,8 @@ export interface ToyPlan {
   readonly quick: boolean;
   /** The check is run in parcels. */
   readonly longCheck: boolean;
+  /** The certificate is written in chunks, with so many milliseconds of work for each. */
+  readonly chunkMs: number | null;
   readonly stages: number;
   /** The last parcel of the cover has nearly everything. */
   readonly lopsided: boolean;
@@ -52,6 +54,7 @@ export function readToy(document: string): ToyPlan {
     rejected: title.includes('rejected'),
     quick: title.includes('quick'),
     longCheck: title.includes('long check'),
+    chunkMs: after('chunk every'),
     stages: after('stages') ?? 1,
     lopsided: title.includes('lopsided'),
   };

@@ -1,18 +1,21 @@
 /** The toy's thread: the same jobs, messages and shared words as the real one. */
-import { createHash } from 'node:crypto';
 import { parentPort, type MessagePort } from 'node:worker_threads';
-import type {
-  AssembleEnd,
-  CheckJob,
-  CheckpointMessage,
-  ChooseEnd,
-  Job,
-  JobEnd,
-  JobMessage,
-  ListEnd,
-  ListJob,
-  SettledFacts,
-  StageAhead,
+import {
+  askOver,
+  pieces,
+  sha256,
+  type Ask,
+  type AssembleEnd,
+  type CheckJob,
+  type CheckpointMessage,
+  type ChooseEnd,
+  type Job,
+  type JobEnd,
+  type JobMessage,
+  type ListEnd,
+  type ListJob,
+  type SettledFacts,
+  type StageAhead,
 } from '@palmette/threads';
 import { isFound, readToy, toyBytes, TOY_PARCELS, type ToyPlan } from './toy-question.ts';
 
@@ -25,25 +28,38 @@ export interface ToyTask {
 const LINE = 'the toy checker has counted again';
 
 parentPort!.on('message', ({ job, words, port }: ToyTask) => {
-  const end = runToy(job, new Int32Array(words), (message) => port.postMessage(message));
+  const shared = new Int32Array(words);
+  const end = runToy(job, shared, (message) => port.postMessage(message), askOver(port, shared));
   port.postMessage({ kind: 'end', end });
   port.close();
   parentPort!.postMessage('free');
 });
 
-function runToy(job: Job, words: Int32Array, say: (message: JobMessage) => void): JobEnd<Job> {
+function runToy(job: Job, words: Int32Array, say: (message: JobMessage) => void, ask: Ask): JobEnd<Job> {
   switch (job.kind) {
     case 'choose':
       return choose(readToy(job.document));
     case 'list':
       return count(job, words, say, JSON.parse(job.plan) as ToyPlan, false);
     case 'assemble':
-      return assemble(readToy(job.document), job);
+      return assemble(readToy(job.document), job, ask);
+    case 'open': {
+      const half = Math.floor(planOf(ask).n / 2);
+      const parcels = [
+        { tree: 0, from: [], to: [half], share: 0.5 },
+        { tree: 0, from: [half], to: null, share: 0.5 },
+      ];
+      return { kind: 'opened', parcels, cpuMs: 1 };
+    }
     case 'check':
-      return count(job, words, say, planOf(job.certificate), true);
+      return count(job, words, say, planOf(ask), true);
     case 'conclude': {
-      const good = job.counts[0]!.nodes === String(planOf(job.certificate).n);
-      return { checker: { verdict: good ? 'VERIFIED' : 'REJECTED', line: LINE, revision: 1, cpuMs: 0 } };
+      const bytes = read(ask);
+      const good = job.counts[0]!.nodes === String(planIn(bytes).n);
+      return {
+        checker: { verdict: good ? 'VERIFIED' : 'REJECTED', line: LINE, revision: 1, cpuMs: 0 },
+        sha256: sha256(bytes),
+      };
     }
     case 'answer':
       throw new Error('the toy has no command line');
@@ -70,7 +86,14 @@ function choose(plan: ToyPlan): ChooseEnd {
 function ahead(plan: ToyPlan, no: number, results: StageAhead['results']): StageAhead {
   const edge = (k: number) => [Math.floor((plan.n * k) / (plan.lopsided ? 100 : TOY_PARCELS))];
   return {
-    stage: { no, dimension: 3 + no, purpose: plan.oneAt === null ? 'all' : 'one', whole: false, method: 'rows', why: 'counted' },
+    stage: {
+      no,
+      dimension: 3 + no,
+      purpose: plan.oneAt === null ? 'all' : 'one',
+      whole: false,
+      method: 'rows',
+      why: 'counted',
+    },
     results,
     estimate: { probes: 1, mean: plan.n, low: plan.n, high: plan.n },
     parcels: Array.from({ length: TOY_PARCELS }, (_, k) => ({
@@ -81,10 +104,10 @@ function ahead(plan: ToyPlan, no: number, results: StageAhead['results']): Stage
   };
 }
 
-function assemble(plan: ToyPlan, job: Extract<Job, { kind: 'assemble' }>): AssembleEnd {
+function assemble(plan: ToyPlan, job: Extract<Job, { kind: 'assemble' }>, ask: Ask): AssembleEnd {
   if (job.results.length < plan.stages)
     return { kind: 'stage', ahead: ahead(plan, job.results.length, job.results), cpuMs: 1 };
-  const found = job.found.flatMap((raw) =>
+  const found = [...pieces('found', ask)].flatMap((raw) =>
     new TextDecoder()
       .decode(raw)
       .split('\n')
@@ -92,18 +115,23 @@ function assemble(plan: ToyPlan, job: Extract<Job, { kind: 'assemble' }>): Assem
       .map(Number),
   );
   const done = certified(plan, plan.oneAt === null ? found : found.slice(0, 1));
-  if (!plan.longCheck)
+  if (!plan.longCheck && plan.chunkMs === null)
     return { kind: 'settled', ...done, nodes: BigInt(job.results[0]!.nodes), method: 'counted', cpuMs: 1 };
-  const half = Math.floor(plan.n / 2);
-  return {
-    kind: 'to check',
-    ...done,
-    parcels: [
-      { tree: 0, from: [], to: [half], share: 0.5 },
-      { tree: 0, from: [half], to: null, share: 0.5 },
-    ],
-    cpuMs: 1,
-  };
+  const [whole] = done.certificate;
+  const file = plan.chunkMs === null ? { head: whole!, last: null } : inChunks(whole!, plan.chunkMs, ask);
+  return { kind: 'to check', facts: done.facts, ...file, cpuMs: 1 };
+}
+
+const CHUNK_BYTES = 16;
+
+/** The bytes as head, chunks and last line, the chunks given away one by one. */
+function inChunks(whole: Uint8Array, chunkMs: number, ask: Ask): { head: Uint8Array; last: Uint8Array } {
+  const end = whole.length - CHUNK_BYTES;
+  for (let at = CHUNK_BYTES; at < end; at += CHUNK_BYTES) {
+    spin(chunkMs * 1000);
+    ask({ kind: 'keep', chunk: whole.slice(at, Math.min(end, at + CHUNK_BYTES)) });
+  }
+  return { head: whole.slice(0, CHUNK_BYTES), last: whole.slice(end) };
 }
 
 function certified(plan: ToyPlan, found: readonly number[]) {
@@ -120,13 +148,16 @@ function certified(plan: ToyPlan, found: readonly number[]) {
   return {
     facts,
     certificate: [raw],
-    sha256: createHash('sha256').update(raw).digest('hex'),
+    sha256: sha256(raw),
     checker: { verdict: plan.rejected ? 'REJECTED' : 'VERIFIED', line: LINE, revision: 1, cpuMs: 1 } as const,
   };
 }
 
-function planOf(certificate: readonly Uint8Array[]): ToyPlan {
-  const { n } = JSON.parse(Buffer.concat(certificate).toString()) as { n: number };
+const read = (ask: Ask): Uint8Array => Buffer.concat([...pieces('certificate', ask)]);
+const planOf = (ask: Ask): ToyPlan => planIn(read(ask));
+
+function planIn(certificate: Uint8Array): ToyPlan {
+  const { n } = JSON.parse(new TextDecoder().decode(certificate)) as { n: number };
   return readToy(JSON.stringify({ source: { p: n } }));
 }
 

@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { afterEach, describe, expect, it } from 'vitest';
 import type { Lease } from '@palmette/store';
-import { openFixture, written } from './fixture.ts';
+import { foundIn, openFixture, written } from './fixture.ts';
 
 const f = await openFixture();
 const { store } = f;
@@ -112,8 +112,8 @@ describe('what was found', () => {
       { ...leases[0]!, chunks: 11 },
       written({ checkpoint: 'd', nodes: 1n, chunks: [chunk('again ')] }),
     );
-    let text = '';
-    for await (const { raw } of store.work.found(choosing.searchId, 1)) text += new TextDecoder().decode(raw);
+    const found = await foundIn(store, choosing.searchId);
+    const text = found.map(({ raw }) => new TextDecoder().decode(raw)).join('');
     const expected = [0, 1, 2, 3].flatMap((i) =>
       Array.from({ length: 12 }, (_, k) => (i === 0 && k === 11 ? 'again' : `${i}.${k}`)),
     );

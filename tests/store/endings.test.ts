@@ -2,7 +2,7 @@ import { randomBytes } from 'node:crypto';
 import { Refusal } from '@palmette/contracts';
 import { afterEach, describe, expect, it } from 'vitest';
 import { FencedOff, type Lease } from '@palmette/store';
-import { LETTERS, openFixture, plan, sha256, verdict, written } from './fixture.ts';
+import { foundIn, LETTERS, openFixture, plan, sha256, verdict, written } from './fixture.ts';
 
 const f = await openFixture();
 const { store } = f;
@@ -210,12 +210,19 @@ describe('withdraw', () => {
     await expect(store.work.finish(leases[0]!, written(), null)).rejects.toBeInstanceOf(FencedOff);
     await expect(plan(store, leases[0]!, 2)).rejects.toBeInstanceOf(FencedOff);
     expect(await state(id)).toMatchObject({ state: 'withdrawn', progress: { orbitsFound: '2', workers: 0 } });
-    const found = [];
-    for await (const { records } of store.work.found(leases[0]!.searchId, 1)) found.push(records);
-    expect(found).toEqual([2]);
+    expect((await foundIn(store, leases[0]!.searchId)).map((chunk) => chunk.records)).toEqual([2]);
     await expect(store.questions.hold(ines, id)).rejects.toMatchObject({ code: 'state' });
   });
 });
+
+async function draftOf(searchId: string): Promise<Uint8Array[]> {
+  const pieces: Uint8Array[] = [];
+  for (let no = 0; ; no += 1) {
+    const piece = await store.work.draft(searchId, no);
+    if (piece === null) return pieces;
+    pieces.push(piece);
+  }
+}
 
 describe('a certificate', () => {
   it('comes back byte for byte, in pieces of at most 1 MiB', async () => {
@@ -255,12 +262,15 @@ describe('a certificate', () => {
 
   it('is kept as a draft while it is checked in parcels', async () => {
     const station = await f.station(4);
-    const { leases } = await running(station, 1);
+    const { id, leases } = await running(station, 1);
     await store.work.finish(leases[0]!, written(), null);
     const assembling = (await f.claim(station))!;
-    const raw = [randomBytes(1_500_000)];
-    await store.work.keepDraft(assembling.searchId, [randomBytes(5)]);
-    await store.work.keepDraft(assembling.searchId, raw);
+    const raw = [randomBytes(1_500_000), randomBytes(300)];
+    await store.work.keepDraft(assembling.searchId, await store.work.keepBytes(randomBytes(5)));
+    const pieces = [...(await store.work.keepBytes(raw[0]!)), ...(await store.work.keepBytes(raw[1]!))];
+    expect(await store.work.keepBytes(raw[0]!)).toEqual(pieces.slice(0, 2)); // a station that begins again
+    expect(await draftOf(assembling.searchId)).toHaveLength(1);
+    await store.work.keepDraft(assembling.searchId, pieces);
     await store.work.goOn(assembling.searchId, {
       phase: 'checking',
       stage: 1,
@@ -271,7 +281,7 @@ describe('a certificate', () => {
         { from: [1], to: [2], share: 0.5 },
       ],
     });
-    expect(sha256(await store.work.draft(assembling.searchId))).toBe(sha256(raw));
+    expect(sha256(await draftOf(assembling.searchId))).toBe(sha256(raw));
     for (let i = 0; i < 2; i += 1) {
       const checking = (await f.claim(station))!;
       expect(checking).toMatchObject({ phase: 'checking', stage: 1 });
@@ -280,8 +290,23 @@ describe('a certificate', () => {
     const concluding = (await f.claim(station))!;
     expect(concluding.phase).toBe('assembling');
     expect((await store.work.parcels(concluding.searchId, 'checking', 1)).map((p) => p.nodes)).toEqual([7n, 7n]);
-    const certificate = { ...verdict().certificate, raw, sha256: sha256(raw) };
+    expect(await store.questions.certificate(id)).toBeNull();
+    const certificate = { ...verdict().certificate, raw: 'draft', sha256: sha256(raw) } as const;
     expect(await store.work.settle(concluding.searchId, verdict('', { certificate }), LETTERS)).toBe(true);
-    expect(await store.work.draft(concluding.searchId)).toEqual([]);
+    expect(await draftOf(concluding.searchId)).toEqual([]);
+    const kept = (await store.questions.certificate(id))!;
+    expect(kept).toMatchObject({ sha256: sha256(raw), bytes: 1_500_300 });
+    const chunks = [];
+    for await (const chunk of kept.chunks) chunks.push(chunk);
+    expect(sha256(chunks)).toBe(sha256(raw));
+  });
+
+  it('of which there is no draft settles nothing', async () => {
+    const station = await f.station();
+    const id = await f.ask(ines, studyId);
+    const { searchId } = (await f.claim(station))!;
+    const certificate = { ...verdict().certificate, raw: 'draft' } as const;
+    await expect(store.work.settle(searchId, verdict('', { certificate }), LETTERS)).rejects.toThrow('no draft');
+    expect((await state(id)).state).toBe('searching');
   });
 });

@@ -7,6 +7,8 @@ import {
   openStore,
   type Actor,
   type CheckpointWrite,
+  type FoundChunk,
+  type FoundPlace,
   type Lease,
   type LetterWriter,
   type Store,
@@ -154,6 +156,17 @@ export function verdict(text = 'a certificate', more: Partial<VerdictWrite> = {}
     certificate: { sha256: sha256(raw), raw, checkerLine: 'VERIFIED', checkerRevision: 1, checkCpuMs: 5 },
     ...more,
   };
+}
+
+/** Everything that stage 1 found, chunk by chunk. */
+export async function foundIn(store: Store, searchId: string): Promise<FoundChunk[]> {
+  const chunks: FoundChunk[] = [];
+  for (let after: FoundPlace | null = null; ;) {
+    const chunk: FoundChunk | null = await store.work.found(searchId, 1, after);
+    if (chunk === null) return chunks;
+    chunks.push(chunk);
+    after = chunk.place;
+  }
 }
 
 export function sha256(raw: readonly Uint8Array[]): string {

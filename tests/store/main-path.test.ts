@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { LETTERS, openFixture, plan, verdict, written } from './fixture.ts';
+import { foundIn, LETTERS, openFixture, plan, verdict, written } from './fixture.ts';
 
 const f = await openFixture();
 const { store } = f;
@@ -62,9 +62,10 @@ describe('the main path through the store', () => {
     const assembling = (await f.claim(station))!;
     expect(assembling).toMatchObject({ phase: 'assembling', stage: 1, stageResults: '{"stage":1}' });
     expect((await store.work.parcels(assembling.searchId, 'listing', 1)).map((p) => p.nodes)).toEqual([100n, 10n, 5n]);
-    const found = [];
-    for await (const { records, raw } of store.work.found(assembling.searchId, 1))
-      found.push([records, new TextDecoder().decode(raw)]);
+    const found = (await foundIn(store, assembling.searchId)).map(({ records, raw }) => [
+      records,
+      new TextDecoder().decode(raw),
+    ]);
     expect(found).toEqual([[1, '{"a":1}\n']]);
     expect(await store.work.settle(assembling.searchId, verdict(), LETTERS)).toBe(true);
     expect(await store.work.settle(assembling.searchId, verdict(), LETTERS)).toBe(false);

@@ -1,8 +1,8 @@
-/** `palmette answer`: one question, or one a line. */
+/** `palmette answer`: one question, or one a line. Of a long list nothing is held whole. */
 import { availableParallelism } from 'node:os';
 import { once } from 'node:events';
 import { answerOnAllCores, openThreads, type AnswerEnd, type Refused } from '@palmette/threads';
-import { fileArgument, readAll, readLines } from './read-input.ts';
+import { fileArgument, readAll, readLines, UsageError } from './read-input.ts';
 
 const EXIT = { settled: 0, open: 3, refused: 2 } as const;
 
@@ -17,14 +17,22 @@ export async function answer(args: readonly string[]): Promise<number> {
 
 async function answerOne(file: string): Promise<number> {
   const document = (await readAll(file)).toString('utf8');
-  const end = await answerOnAllCores(document, { threads: availableParallelism() });
+  const end = await answerOnAllCores(document, { threads: availableParallelism(), memoryBytes: memoryBytes(), write });
   if (end.kind === 'refused') {
     process.stderr.write(`${refusalLine(end)}\n`);
     return EXIT.refused;
   }
-  for (const bytes of end.certificate) await write(bytes);
   if (end.reason !== undefined) process.stderr.write(`open: ${end.reason}; nothing can be concluded\n`);
   return end.settled ? EXIT.settled : EXIT.open;
+}
+
+/** Bound of a thread's own search memory, from the setting that the stations read too (.env.example). */
+function memoryBytes(): number {
+  const text = process.env['MEMORY_MIB_PER_THREAD'] || '1024';
+  const mebibytes = Number(text);
+  if (!(mebibytes > 0))
+    throw new UsageError(`MEMORY_MIB_PER_THREAD: expected a number above 0, found ${JSON.stringify(text)}`);
+  return mebibytes * 1024 * 1024;
 }
 
 function refusalLine(refusal: Refused): string {

@@ -1,39 +1,67 @@
-/** All parcels of a stage are done: the next stage, or the certificate; a long check becomes parcels of its own. */
-import type { AssembleEnd } from '@palmette/threads';
+/**
+ * All parcels of a stage are done: the next stage, or the certificate; a long check becomes parcels of its own. The
+ * certificate is written chunk by chunk while the list is read; killed anywhere, it is begun again and its chunks, under
+ * the same hashes, are already there. Nothing is a draft before it is whole.
+ */
+import { runServed, sha256, type AssembleEnd } from '@palmette/threads';
 import type { Desk } from './desk.ts';
-import { account, settle } from './endings.ts';
+import { account, reject, settle } from './endings.ts';
 import { inForest } from './forest.ts';
 import type { HeldParcel } from './held-parcel.ts';
-import { readBook, writeBook, type StageBook } from './stage-book.ts';
+import { draftShelf, foundShelf, keepPieces } from './shelves.ts';
+import { readBook, writeBook, type StageBook, type ToCheck } from './stage-book.ts';
 
 /** Trees up to this many nodes are checked by the assembling thread itself: about a second. */
 const WHOLE_CHECK_NODES = 2_000;
 
+type ToCheckEnd = Extract<AssembleEnd, { kind: 'to check' }>;
+
 export async function assemble(held: HeldParcel, desk: Desk): Promise<void> {
   const { lease } = held;
   const book = readBook(lease.stageResults);
-  const { result, found } = await desk.patience.untilAnswered('the parcels of a stage', () => gather(held, desk, book));
+  const result = await desk.patience.untilAnswered('the parcels of a stage', () => gather(held, desk, book));
+  const chunks: string[] = [];
+  const job = {
+    kind: 'assemble',
+    document: lease.document,
+    plan: lease.plan!,
+    results: [...book.results, result],
+    wholeCheckNodes: WHOLE_CHECK_NODES,
+  } as const;
   const end = await held.run(
-    desk.engine.run({
-      kind: 'assemble',
-      document: lease.document,
-      plan: lease.plan!,
-      results: [...book.results, result],
-      found,
-      wholeCheckNodes: WHOLE_CHECK_NODES,
+    runServed(desk.engine, job, {
+      found: foundShelf(desk, lease.searchId, lease.stage),
+      keep: (chunk) => keepPieces(desk, chunk, chunks),
     }),
   );
   await account(held, desk, { cpuMs: end.cpuMs });
   if (end.kind === 'settled') return settle(held, desk, end);
   if (end.kind === 'stage') return nextStage(held, desk, end);
-  await desk.patience.untilAnswered('a certificate in the making', () =>
-    desk.work.keepDraft(lease.searchId, end.certificate),
-  );
+  await keepDraft(held, desk, end, chunks);
+  await openDraft(held, desk, { ...book, toCheck: { facts: end.facts, sha256: sha256(end.head) } });
+}
+
+/** The chunks are kept by now; with head and last line they make the draft, in one write. */
+async function keepDraft({ lease }: HeldParcel, desk: Desk, { head, last }: ToCheckEnd, chunks: readonly string[]) {
+  const pieces: string[] = [];
+  await keepPieces(desk, head, pieces);
+  pieces.push(...chunks);
+  if (last !== null) await keepPieces(desk, last, pieces);
+  await desk.patience.untilAnswered('a certificate in the making', () => desk.work.keepDraft(lease.searchId, pieces));
+}
+
+/** Everything but the trees is checked here; these become parcels. */
+async function openDraft(held: HeldParcel, desk: Desk, book: StageBook & { toCheck: ToCheck }): Promise<void> {
+  const { lease } = held;
+  const job = { kind: 'open', certificate: book.toCheck.sha256 } as const;
+  const end = await held.run(runServed(desk.engine, job, { certificate: draftShelf(desk, lease.searchId) }));
+  if (end.kind === 'not accepted') return reject(held, desk, end.checker);
+  await account(held, desk, { cpuMs: end.cpuMs });
   await desk.patience.untilAnswered('the cover of a check', () =>
     desk.work.goOn(lease.searchId, {
       phase: 'checking',
       stage: lease.stage,
-      stageResults: writeBook({ ...book, toCheck: { facts: end.facts, sha256: end.sha256 } }),
+      stageResults: writeBook(book),
       facts: {},
       parcels: end.parcels.map(({ tree, share, ...interval }) => ({ ...inForest(tree, interval), share })),
     }),
@@ -56,19 +84,20 @@ function nextStage(
   );
 }
 
-/** What the parcels of the stage counted and found, in address order. */
-async function gather({ lease }: HeldParcel, { work }: Desk, { stage }: StageBook) {
+/** What the parcels of the stage counted. */
+async function gather(
+  { lease }: HeldParcel,
+  { work }: Desk,
+  { stage }: StageBook,
+): Promise<StageBook['results'][number]> {
   const parcels = await work.parcels(lease.searchId, 'listing', lease.stage);
   const sum = (of: 'nodes' | 'orbits') => parcels.reduce((total, parcel) => total + parcel[of], 0n);
-  const found: Uint8Array[] = [];
-  for await (const chunk of work.found(lease.searchId, lease.stage)) found.push(chunk.raw);
   const orbits = sum('orbits');
-  const result: StageBook['results'][number] = {
+  return {
     ...stage,
     // a stage that looks for one embedding ends at the first; otherwise every parcel ran to its end
     complete: stage.purpose === 'all' || orbits === 0n,
     nodes: sum('nodes').toString(),
     orbits: orbits.toString(),
   };
-  return { result, found };
 }

@@ -38,7 +38,7 @@ const NUMBERS = {
   QUANTUM_SECONDS: [60, 0.1, 3_600],
   CHECKPOINT_SECONDS: [2, 0.05, 60],
   QUICK_CPU_MS: [2_000, 0, 600_000],
-  MEMORY_MIB_PER_THREAD: [1_024, 16, 1_048_576],
+  MEMORY_MIB_PER_THREAD: [1_024, 1, 1_048_576],
   DEFAULT_WORKERS: [2, 0, 10_000],
   DEFAULT_CPU_HOURS_PER_DAY: [40, 0, 27_777],
 } as const satisfies Record<string, readonly [fallback: number, low: number, high: number]>;

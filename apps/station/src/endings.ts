@@ -2,6 +2,7 @@
 import type { Settled } from '@palmette/threads';
 import type { Desk } from './desk.ts';
 import type { HeldParcel } from './held-parcel.ts';
+import { keepPieces } from './shelves.ts';
 import type { ToCheck } from './stage-book.ts';
 
 /** Back to waiting with its last checkpoint. */
@@ -52,7 +53,8 @@ export async function account(held: HeldParcel, desk: Desk, cost: { cpuMs: numbe
 
 export interface Verdict {
   readonly facts: ToCheck['facts'];
-  readonly certificate: readonly Uint8Array[];
+  /** The bytes, or: the search's draft has them. */
+  readonly certificate: readonly Uint8Array[] | 'draft';
   readonly sha256: string;
   readonly checker: Settled['checker'];
   /** One sentence on what was chosen, where no plan has said it. */
@@ -64,12 +66,8 @@ export async function settle(held: HeldParcel, desk: Desk, verdict: Verdict): Pr
   const { searchId } = held.lease;
   const { facts, certificate, sha256, checker, method } = verdict;
   if (checker.verdict !== 'VERIFIED') {
-    await desk.patience.untilAnswered('a rejected certificate', () => desk.work.keepDraft(searchId, certificate));
-    return breakDown(
-      held,
-      desk,
-      `the checker did not accept the certificate (${checker.line}). The certificate is kept for the admin; no verdict is shown until this is explained`,
-    );
+    if (certificate !== 'draft') await keepRejected(searchId, desk, certificate);
+    return reject(held, desk, checker);
   }
   const first = await desk.patience.untilAnswered('a verdict', () =>
     desk.work.settle(
@@ -89,4 +87,19 @@ export async function settle(held: HeldParcel, desk: Desk, verdict: Verdict): Pr
     ),
   );
   desk.log.info({ search: searchId, verdict: facts.verdict }, first ? 'settled' : 'held, spent or ended meanwhile');
+}
+
+async function keepRejected(searchId: string, desk: Desk, certificate: readonly Uint8Array[]): Promise<void> {
+  const pieces: string[] = [];
+  for (const raw of certificate) await keepPieces(desk, raw, pieces);
+  await desk.patience.untilAnswered('a rejected certificate', () => desk.work.keepDraft(searchId, pieces));
+}
+
+/** A certificate of ours that the checker does not accept; its bytes are the search's draft. */
+export function reject(held: HeldParcel, desk: Desk, { line }: Settled['checker']): Promise<void> {
+  return breakDown(
+    held,
+    desk,
+    `the checker did not accept the certificate (${line}). The certificate is kept for the admin; no verdict is shown until this is explained`,
+  );
 }

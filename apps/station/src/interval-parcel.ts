@@ -1,12 +1,13 @@
 /** A parcel of a tree, the engine's or the checker's: runs from its checkpoint until it is done, yields or is stopped. */
-import type { CheckJob, CutMessage, ListJob } from '@palmette/threads';
+import { runServed, type CheckJob, type CutMessage, type ListJob, type Shelf } from '@palmette/threads';
 import { answerCut } from './cut.ts';
 import type { Desk } from './desk.ts';
 import { spend } from './endings.ts';
 import { inForest, inTree } from './forest.ts';
 import type { HeldParcel } from './held-parcel.ts';
 import { ParcelWriter } from './parcel-writer.ts';
-import { readBook } from './stage-book.ts';
+import { draftShelf } from './shelves.ts';
+import { NoBook, readBook } from './stage-book.ts';
 
 export async function list(held: HeldParcel, desk: Desk): Promise<void> {
   const { lease } = held;
@@ -23,10 +24,10 @@ export async function list(held: HeldParcel, desk: Desk): Promise<void> {
 
 export async function check(held: HeldParcel, desk: Desk): Promise<void> {
   const { lease } = held;
-  const certificate = await desk.patience.untilAnswered('a certificate in the making', () =>
-    desk.work.draft(lease.searchId),
-  );
-  await runInterval(held, desk, { kind: 'check', certificate, ...inTree(lease), ...paceOf(held, desk) });
+  const { toCheck } = readBook(lease.stageResults);
+  if (toCheck === null) throw new NoBook('the certificate that is to be checked is not named');
+  const job: CheckJob = { kind: 'check', certificate: toCheck.sha256, ...inTree(lease), ...paceOf(held, desk) };
+  await runInterval(held, desk, job, { certificate: draftShelf(desk, lease.searchId) });
 }
 
 function paceOf({ lease }: HeldParcel, { config }: Desk) {
@@ -37,7 +38,7 @@ function paceOf({ lease }: HeldParcel, { config }: Desk) {
   };
 }
 
-async function runInterval(held: HeldParcel, desk: Desk, job: ListJob | CheckJob): Promise<void> {
+async function runInterval(held: HeldParcel, desk: Desk, job: ListJob | CheckJob, shelf: Shelf = {}): Promise<void> {
   const budgetLeftMs = held.lease.budgetLeftMs ?? Number.POSITIVE_INFINITY;
   const cpuBeforeMs = held.lease.cpuMs;
   const writer = new ParcelWriter(held, desk);
@@ -45,7 +46,7 @@ async function runInterval(held: HeldParcel, desk: Desk, job: ListJob | CheckJob
     job.kind === 'check' && cut.mid !== null
       ? { ...cut, mid: inForest(job.tree, { from: cut.mid, to: null }).from }
       : cut;
-  const running = desk.engine.run<ListJob | CheckJob>(job, (message) => {
+  const running = runServed<ListJob | CheckJob>(desk.engine, job, shelf, (message) => {
     if (message.kind === 'cut') return void answerCut(held, desk, inCover(message), running);
     held.note(message.shareDone);
     writer.push(message);

@@ -6,7 +6,10 @@ import type { AssembleEnd, SettledFacts, StageAhead } from '@palmette/threads';
 
 type Stage = StageAhead['stage'];
 type StageResult = StageAhead['results'][number];
-export type ToCheck = Pick<Extract<AssembleEnd, { kind: 'to check' }>, 'facts' | 'sha256'>;
+export type ToCheck = Pick<Extract<AssembleEnd, { kind: 'to check' }>, 'facts'> & {
+  /** Names the certificate to the threads that check it. */
+  readonly sha256: string;
+};
 
 export interface StageBook {
   readonly stage: Stage;

@@ -7,4 +7,7 @@ export {
   type CertificateParts,
   type EmbeddingRecord,
   type Sha256,
+  type WriterBounds,
+  type WriterOptions,
+  type WrittenFile,
 } from './writer.ts';

@@ -1,6 +1,7 @@
 /**
  * The canonical writer. One object up to 10,000 embeddings and 8 MB, JSON lines with hashed chunks above
- * (FORMAT.md, sections 2, 6 and 9). Same parts, same bytes.
+ * (FORMAT.md, sections 2, 6 and 9). Same parts, same bytes. A list above the bound is never held whole: each chunk is
+ * handed over as soon as it is full.
  */
 import type {
   CertificateClaim,
@@ -22,9 +23,19 @@ export type Sha256 = (bytes: Uint8Array) => string;
 const SPARSE_ABOVE = 200;
 /** Above this many entries zero columns are left out. */
 const DENSE_ENTRIES = 250_000;
-const ONE_OBJECT_EMBEDDINGS = 10_000;
-const ONE_OBJECT_BYTES = 8_000_000;
-const CHUNK_BYTES = 1024 * 1024;
+
+/** Where one object ends and chunks begin. FORMAT.md, section 9. */
+export interface WriterBounds {
+  readonly oneObjectEmbeddings: number;
+  readonly oneObjectBytes: number;
+  readonly chunkBytes: number;
+}
+
+const FORMAT_BOUNDS: WriterBounds = {
+  oneObjectEmbeddings: 10_000,
+  oneObjectBytes: 8_000_000,
+  chunkBytes: 1024 * 1024,
+};
 
 /** One embedding: N rows of its nonzero columns in canonical order, and the number of zero columns after them. */
 export interface EmbeddingRecord {
@@ -85,64 +96,103 @@ export interface CertificateParts {
   readonly evidence: CertificateEvidence;
 }
 
-/** Collects the embeddings in order, then writes the file. */
+export interface WriterOptions {
+  /** Where a chunk goes once the list is known to be a large one: in order, each once, not held here any more. */
+  readonly keep: (chunk: Uint8Array) => void;
+  /** One object on one line whatever its size: nothing is given to `keep`. */
+  readonly oneObject?: boolean;
+  /** Other bounds than the format's, for trying the writer with small lists. */
+  readonly bounds?: WriterBounds;
+}
+
+/** The file is `head`, then the chunks that `keep` was given, in order, then `last`. */
+export interface WrittenFile {
+  readonly head: Uint8Array;
+  /** The line after the chunks; null for one object, which has none. */
+  readonly last: Uint8Array | null;
+}
+
+/** Takes the embeddings in order, then writes the head. */
 export class CertificateWriter {
   private readonly encoder = new TextEncoder();
-  private readonly chunks: { bytes: Uint8Array; records: number }[] = [];
+  private readonly bounds: WriterBounds;
+  /** Chunks that are held while the file may still be one object. */
+  private held: { bytes: Uint8Array; records: number }[] = [];
+  private readonly kept: ChunkEntry[] = [];
+  private large = false;
   private lines: string[] = [];
   private lineBytes = 0;
   private records = 0;
   private totalBytes = 0;
 
-  /** @param oneObject keep one object on one line whatever its size */
   constructor(
     private readonly sha256: Sha256,
-    private readonly oneObject = false,
-  ) {}
+    private readonly options: WriterOptions,
+  ) {
+    this.bounds = options.bounds ?? FORMAT_BOUNDS;
+  }
 
   add(record: EmbeddingRecord): void {
     const line = embeddingText(record);
     const bytes = line.length + 1; // ASCII only: matrices, decimal strings and our own words
-    if (this.lineBytes > 0 && this.lineBytes + bytes > CHUNK_BYTES) this.closeChunk();
+    if (this.lineBytes > 0 && this.lineBytes + bytes > this.bounds.chunkBytes) this.closeChunk();
     this.lines.push(line);
     this.lineBytes += bytes;
     this.records += 1;
     this.totalBytes += bytes;
+    if (this.large || this.options.oneObject === true) return;
+    this.large = this.records > this.bounds.oneObjectEmbeddings || this.totalBytes > this.bounds.oneObjectBytes;
+    if (this.large) this.handOver();
   }
 
   private closeChunk(): void {
     if (this.lines.length === 0) return;
-    this.chunks.push({ bytes: this.encoder.encode(`${this.lines.join('\n')}\n`), records: this.lines.length });
+    this.held.push({ bytes: this.encoder.encode(`${this.lines.join('\n')}\n`), records: this.lines.length });
     this.lines = [];
     this.lineBytes = 0;
+    if (this.large) this.handOver();
   }
 
-  /** The file's bytes, to be written one after the other. */
-  finish(parts: CertificateParts): Uint8Array[] {
+  private handOver(): void {
+    for (const { bytes, records } of this.held) {
+      this.kept.push({ sha256: this.sha256(bytes), records, bytes: bytes.length });
+      this.options.keep(bytes);
+    }
+    this.held = [];
+  }
+
+  finish(parts: CertificateParts): WrittenFile {
     this.closeChunk();
-    const large = !this.oneObject && (this.records > ONE_OBJECT_EMBEDDINGS || this.totalBytes > ONE_OBJECT_BYTES);
-    const embeddings = large
-      ? JSON.stringify({
-          chunks: this.chunks.map((c): ChunkEntry => ({
-            sha256: this.sha256(c.bytes),
-            records: c.records,
-            bytes: c.bytes.length,
-          })),
-        })
-      : `[${this.chunks.map((c) => new TextDecoder().decode(c.bytes).trimEnd().replaceAll('\n', ',')).join(',')}]`;
     const body = this.encoder.encode(
       [
         `{"format":${JSON.stringify(CERTIFICATE_FORMAT)}`,
         `"question":${JSON.stringify(parts.question)}`,
         `"lattice":${JSON.stringify(parts.lattice)}`,
         `"claim":${JSON.stringify(parts.claim)}`,
-        `"embeddings":${embeddings}`,
+        `"embeddings":${this.large ? JSON.stringify({ chunks: this.kept }) : this.list()}`,
         `"tests":${JSON.stringify(parts.tests)}`,
         `"evidence":${JSON.stringify(parts.evidence)}`,
       ].join(','),
     );
-    const end = `"end":${JSON.stringify({ records: this.records, sha256: this.sha256(body) })}}\n`;
-    const head = [body, this.encoder.encode(`,${end}`)];
-    return large ? [...head, ...this.chunks.map((c) => c.bytes), this.encoder.encode(`{${end}`)] : head;
+    const end = this.encoder.encode(`"end":${JSON.stringify({ records: this.records, sha256: this.sha256(body) })}}\n`);
+    return { head: joined(body, COMMA, end), last: this.large ? joined(BRACE, end) : null };
   }
+
+  private list(): string {
+    const decoder = new TextDecoder();
+    return `[${this.held.map((c) => decoder.decode(c.bytes).trimEnd().replaceAll('\n', ',')).join(',')}]`;
+  }
+}
+
+const COMMA = Uint8Array.of(0x2c);
+const BRACE = Uint8Array.of(0x7b);
+
+function joined(...parts: readonly Uint8Array[]): Uint8Array {
+  const out = new Uint8Array(parts.reduce((sum, part) => sum + part.length, 0));
+  let at = 0;
+  for (const part of parts) {
+    out.set(part, at);
+    at += part.length;
+  }
+  return out;
 }

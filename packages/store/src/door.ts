@@ -177,6 +177,19 @@ export interface CheckpointWrite {
   readonly chunks: readonly { readonly records: number; readonly raw: Uint8Array }[];
 }
 
+/** Where a chunk stands among those of its stage. */
+export interface FoundPlace {
+  readonly from: string;
+  readonly parcelId: string;
+  readonly no: number;
+}
+
+export interface FoundChunk {
+  readonly place: FoundPlace;
+  readonly records: number;
+  readonly raw: Uint8Array;
+}
+
 /** What the search wants from the worker after a write. */
 export type Advice = 'go on' | 'yield' | 'stop';
 
@@ -200,7 +213,8 @@ export interface VerdictWrite {
   readonly method?: string | undefined;
   readonly certificate: {
     readonly sha256: string;
-    readonly raw: readonly Uint8Array[];
+    /** The bytes; or the search's draft, whose bytes were hashed as they were checked. */
+    readonly raw: readonly Uint8Array[] | 'draft';
     readonly checkerLine: string;
     readonly checkerRevision: number;
     readonly checkCpuMs: number;
@@ -249,8 +263,8 @@ export interface WorkStore {
       parcels: readonly ParcelDraft[];
     },
   ): Promise<void>;
-  /** All found embeddings of a stage in address order of the parcels. */
-  found(searchId: string, stage: number): AsyncIterable<{ records: number; raw: Uint8Array }>;
+  /** The chunk of found embeddings after this place (null: the first) in address order of a stage's parcels, or null. */
+  found(searchId: string, stage: number, after: FoundPlace | null): Promise<FoundChunk | null>;
   /** Parcels of a phase and stage with their results, in address order. */
   parcels(
     searchId: string,
@@ -266,9 +280,15 @@ export interface WorkStore {
       result: string | null;
     }[]
   >;
-  /** Draft bytes of a certificate that is still being checked in parcels. */
-  keepDraft(searchId: string, raw: readonly Uint8Array[]): Promise<void>;
-  draft(searchId: string): Promise<Uint8Array[]>;
+  /**
+   * Keeps bytes and answers the hashes of their pieces (at most 1 MiB each), in order. Nothing points to them yet; the same
+   * bytes again change nothing.
+   */
+  keepBytes(raw: Uint8Array): Promise<readonly string[]>;
+  /** Makes kept pieces, in this order, the search's draft: a certificate that is still being checked. All or none of it. */
+  keepDraft(searchId: string, pieces: readonly string[]): Promise<void>;
+  /** A piece of the draft, from 0; null after the last. */
+  draft(searchId: string, no: number): Promise<Uint8Array | null>;
   /**
    * Settled: verdict, certificate, letters to be sent, in one transaction. False if the search had already ended; false
    * also while it is held or spent: then its parcel waits and is done again when the search goes on.

@@ -1,21 +1,18 @@
-/** From a conclusion and the found orbits to the certificate's bytes and the facts that the search keeps. */
+/**
+ * From a conclusion and the found orbits to the certificate's bytes and the facts that the search keeps. In chunks: the
+ * orbits are taken one by one, and what is full is handed over. Whole: for lists that are known to be short.
+ */
 import {
-  CertificateWriter,
   stringMatrix,
   type CertificateClaim,
-  type CertificateEvidence,
   type CertificateLattice,
-  type EmbeddingRecord,
   type Exclusion,
-  type TestResult,
   type Tree,
   type TreeBasis,
+  type WrittenFile,
 } from '@palmette/certificate';
-import { TestsOnList } from '@palmette/lattice';
 import {
   countColumns,
-  embeddingMatrix,
-  orbitSize,
   treeBasis,
   type ArithmeticGroundLike,
   type Basis,
@@ -25,6 +22,7 @@ import {
   type StageResult,
 } from '@palmette/search';
 import type { SettledFacts } from './jobs.ts';
+import { ListWriter, type KeepChunk } from './list-writer.ts';
 import { sha256, type Understood } from './understand.ts';
 
 export interface Certified {
@@ -37,14 +35,10 @@ export interface Certified {
 export interface OpenParts {
   readonly dimension: number | null;
   readonly plan: Plan | null;
-  readonly found: readonly FoundOrbit[];
+  readonly found: Iterable<FoundOrbit>;
 }
 
-/**
- * Writes the certificate of a settled search.
- * @param plan null where arithmetic settled the question before a plan was made
- * @param found orbits of the list stage in tree order; for scope `one` the witness
- */
+/** A settled search's certificate, held whole. */
 export function certify(
   u: Understood,
   plan: Plan | null,
@@ -52,24 +46,55 @@ export function certify(
   results: readonly StageResult[],
   found: readonly FoundOrbit[],
 ): Certified {
+  const chunks: Uint8Array[] = [];
+  const { facts, ...file } = certifyInChunks(u, plan, conclusion, results, found, (chunk) => chunks.push(chunk));
+  return { facts, ...whole(file, chunks) };
+}
+
+/** The certificate of a search that was left open, held whole. */
+export function certifyOpen(u: Understood, open: OpenParts): Omit<Certified, 'facts'> {
+  const chunks: Uint8Array[] = [];
+  return whole(
+    certifyOpenInChunks(u, open, (chunk) => chunks.push(chunk)),
+    chunks,
+  );
+}
+
+function whole({ head, last }: WrittenFile, chunks: readonly Uint8Array[]): Omit<Certified, 'facts'> {
+  const certificate = [head, ...chunks, ...(last === null ? [] : [last])];
+  return { certificate, sha256: sha256(Buffer.concat(certificate)) };
+}
+
+/**
+ * Writes the certificate of a settled search.
+ * @param plan null where arithmetic settled the question before a plan was made
+ * @param found orbits of the list stage in tree order; for scope `one` the witness
+ */
+export function certifyInChunks(
+  u: Understood,
+  plan: Plan | null,
+  conclusion: Conclusion,
+  results: readonly StageResult[],
+  found: Iterable<FoundOrbit>,
+  keep: KeepChunk,
+): WrittenFile & { readonly facts: SettledFacts } {
   const { lattice, canonical } = u;
   const embeds = conclusion.verdict === 'embeds';
   const anyTarget = 'any' in canonical.target;
   const list = conclusion.listStage === null ? null : results.find((r) => r.no === conclusion.listStage)!;
   const complete = embeds ? conclusion.listComplete : true;
-  const kept = embeds ? (complete ? found : found.slice(0, 1)) : [];
-  const width = list?.dimension ?? conclusion.dimension ?? 0;
-  const records = recordsOf(u, plan, kept, anyTarget ? null : width);
+  const dimension = anyTarget ? null : conclusion.dimension;
+  const writer = new ListWriter(u, anyTarget ? null : (list?.dimension ?? dimension ?? 0), dimension, keep);
+  if (embeds) writer.take(plan!, found, complete ? Number.POSITIVE_INFINITY : 1);
+  const { orbits, total } = writer;
   const exclusion = conclusion.exclusion === null ? null : exclusionOf(u, plan, conclusion.exclusion, results);
-  const total = records.reduce((sum, r) => sum + r.orbitSize, 0n);
-  const orbits = BigInt(records.length);
   const ground = embeds ? (complete ? 'exhaustion' : 'embedding') : exclusion!.ground;
   const claim: CertificateClaim = {
     verdict: conclusion.verdict,
     ground,
     target: canonical.target,
     scope: canonical.scope,
-    dimension: anyTarget ? null : conclusion.dimension,
+    dimension,
     complete,
     ...(complete ? { orbits: orbits.toString() } : {}),
     ...(complete && !(anyTarget && embeds) ? { total: total.toString() } : {}),
@@ -79,15 +104,14 @@ export function certify(
     list: embeds && complete ? treeOf(u, plan!, list!) : null,
     ...(canonical.secondOpinion === true ? { second: secondOf(u, plan, conclusion, results) } : {}),
   };
-  const bytes = write(u, claim, records, complete, evidence);
   return {
-    ...bytes,
+    ...writer.finish({ lattice: latticeOf(u), claim, evidence }, complete),
     facts: {
       verdict: conclusion.verdict,
       ground,
       complete,
       rank: lattice.rank,
-      dimension: claim.dimension,
+      dimension,
       orbits: complete ? orbits : null,
       total: complete && !(anyTarget && embeds) ? total : null,
     },
@@ -95,9 +119,11 @@ export function certify(
 }
 
 /** The certificate of a search that was left open: what it lists is right, and it claims nothing else. */
-export function certifyOpen(u: Understood, open: OpenParts): Omit<Certified, 'facts'> {
+export function certifyOpenInChunks(u: Understood, open: OpenParts, keep: KeepChunk): WrittenFile {
   const { canonical } = u;
-  const records = recordsOf(u, open.plan, open.found, 'any' in canonical.target ? null : (open.dimension ?? 0));
+  const width = 'any' in canonical.target ? null : (open.dimension ?? 0);
+  const writer = new ListWriter(u, width, open.dimension, keep);
+  if (open.plan !== null) writer.take(open.plan, open.found);
   const claim: CertificateClaim = {
     verdict: 'open',
     ground: null,
@@ -107,7 +133,7 @@ export function certifyOpen(u: Understood, open: OpenParts): Omit<Certified, 'fa
     complete: false,
   };
   const second = canonical.secondOpinion === true ? { second: null } : {};
-  return write(u, claim, records, false, { exclusions: [], list: null, ...second });
+  return writer.finish({ lattice: latticeOf(u), claim, evidence: { exclusions: [], list: null, ...second } }, false);
 }
 
 /** The tree of the method that was asked first: the list that is written is that of the second. */
@@ -119,53 +145,6 @@ function secondOf(
 ): Tree | null {
   const stage = results.find((r) => r.no === conclusion.secondStage);
   return stage === undefined ? null : treeOf(u, plan!, stage);
-}
-
-function write(
-  u: Understood,
-  claim: CertificateClaim,
-  records: EmbeddingRecord[],
-  complete: boolean,
-  evidence: CertificateEvidence,
-): Omit<Certified, 'facts'> {
-  const writer = new CertificateWriter(sha256, u.oneLine);
-  const tests = testResults(u, records, complete, claim.dimension);
-  records.forEach((record, i) => writer.add({ ...record, tests: tests.each[i] ?? {} }));
-  const certificate = writer.finish({
-    question: { ...u.canonical },
-    lattice: latticeOf(u),
-    claim,
-    tests: tests.overall,
-    evidence,
-  });
-  const hash = sha256(Buffer.concat(certificate));
-  return { certificate, sha256: hash };
-}
-
-function testResults(
-  u: Understood,
-  records: readonly EmbeddingRecord[],
-  complete: boolean,
-  dimension: number | null,
-): { overall: Record<string, TestResult>; each: Record<string, TestResult>[] } {
-  if (u.canonical.tests.length === 0) return { overall: {}, each: [] };
-  const tests = new TestsOnList({ lattice: u.lattice, dimension, tests: u.canonical.tests });
-  const each = records.map((r) => tests.take({ rows: r.rows, zeros: r.zeros }));
-  return { overall: tests.overall(complete), each };
-}
-
-function recordsOf(
-  u: Understood,
-  plan: Plan | null,
-  found: readonly FoundOrbit[],
-  dimension: number | null,
-): EmbeddingRecord[] {
-  return found.map((orbit) => {
-    const { rows } = embeddingMatrix(plan!, orbit, u.reduced.basis);
-    const columns = rows[0]?.length ?? 0;
-    const zeros = dimension === null ? 0 : dimension - columns;
-    return { rows, zeros, orbitSize: orbitSize(orbit, columns + zeros), tests: {} };
-  });
 }
 
 function treeOf(u: Understood, plan: Plan, result: StageResult): Tree {

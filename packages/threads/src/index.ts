@@ -1,7 +1,10 @@
 export type * from './jobs.ts';
+export { WORDS } from './jobs.ts';
+export { askOver, pieces, reply, type Ask } from './asking.ts';
 export { openThreads, type RunningJob, type Threads } from './pool.ts';
 export { choose } from './choose.ts';
 export { answerAlone, CheckFailed, verified } from './answer-alone.ts';
-export { answerOnAllCores } from './answer.ts';
+export { answerOnAllCores, type AnswerOptions } from './answer.ts';
+export { runServed, type Shelf } from './serve.ts';
 export { CpuMeter } from './cpu-meter.ts';
 export { understand, sha256, type Understood } from './understand.ts';

@@ -1,11 +1,13 @@
 /**
  * What a thread can be asked to do, what it says meanwhile and what it answers. Everything here is structured-cloneable.
- * A search goes `choose` → `list` (each parcel) → `assemble` → (`list` of the next stage …) → `check` (each parcel) → `conclude`.
+ * A search goes `choose` → `list` (each parcel) → `assemble` → (`list` of the next stage …) → `open` → `check` (each parcel)
+ * → `conclude`. Long lists do not stand in a job: the thread asks for their pieces one at a time while it works.
  */
 import type { Ground, Verdict } from '@palmette/contracts';
 import type { Stage, StageResult } from '@palmette/search';
 
-/** Shared words between the process and one thread: [0] is a command, [1] the answer to a proposed cut. */
+/** Shared words between the process and one thread: [0] is a command, [1] the answer to a proposed cut, [2] counts replies. */
+export const WORDS = 3;
 export const COMMAND = { goOn: 0, yield: 1, stop: 2, cut: 3 } as const;
 export const CUT_ANSWER = { none: 0, recorded: 1, refused: 2 } as const;
 
@@ -40,22 +42,33 @@ export interface ListJob extends Interval {
   readonly memoryBytes: number;
 }
 
-/** All parcels of a stage are done: the next stage, or the certificate. */
+/**
+ * All parcels of a stage are done: the next stage, or the certificate. Asks for what the last stage found and gives the
+ * chunks of a large certificate away.
+ */
 export interface AssembleJob {
   readonly kind: 'assemble';
   readonly document: string;
   readonly plan: string;
   readonly results: readonly StageResult[];
-  /** JSON lines of the found orbits of the last stage, in address order. */
-  readonly found: readonly Uint8Array[];
   /** Trees above this many nodes are checked in parcels, others at once. */
   readonly wholeCheckNodes: number;
 }
 
+/** What names a certificate to the threads that check it: one that has not opened it asks for its bytes. */
+interface Checking {
+  /** Hash of the head, which covers everything. */
+  readonly certificate: string;
+}
+
+/** Checks everything but the trees, and covers these. */
+export interface OpenJob extends Checking {
+  readonly kind: 'open';
+}
+
 /** Runs one interval of the checker's own tree. */
-export interface CheckJob extends Interval {
+export interface CheckJob extends Interval, Checking {
   readonly kind: 'check';
-  readonly certificate: readonly Uint8Array[];
   readonly tree: number;
   readonly checkpoint: string | null;
   readonly quantumCpuMs: number;
@@ -63,9 +76,8 @@ export interface CheckJob extends Interval {
 }
 
 /** Puts the counts of the checked parcels together: the checker's last word. */
-export interface ConcludeJob {
+export interface ConcludeJob extends Checking {
   readonly kind: 'conclude';
-  readonly certificate: readonly Uint8Array[];
   /** For each tree of the certificate what its parcels counted. */
   readonly counts: readonly { readonly nodes: string; readonly orbits: string }[];
 }
@@ -78,7 +90,7 @@ export interface AnswerJob {
   readonly oneLine: boolean;
 }
 
-export type Job = ChooseJob | ListJob | AssembleJob | CheckJob | ConcludeJob | AnswerJob;
+export type Job = ChooseJob | ListJob | AssembleJob | OpenJob | CheckJob | ConcludeJob | AnswerJob;
 
 /** Deltas since the last message. */
 export interface CheckpointMessage {
@@ -100,7 +112,21 @@ export interface CutMessage {
   readonly shareKept: number;
 }
 
-export type JobMessage = CheckpointMessage | CutMessage;
+/** The thread waits for the next piece: JSON lines of what the last stage found, in address order; or bytes of the certificate. */
+export interface NeedMessage {
+  readonly kind: 'need';
+  readonly of: 'found' | 'certificate';
+  /** Counts from 0; 0 again begins anew. */
+  readonly no: number;
+}
+
+/** The thread waits until a chunk of the certificate that it writes is kept. */
+export interface KeepMessage {
+  readonly kind: 'keep';
+  readonly chunk: Uint8Array;
+}
+
+export type JobMessage = CheckpointMessage | CutMessage | NeedMessage | KeepMessage;
 
 /** What a settled search says, beside the certificate's bytes. */
 export interface SettledFacts {
@@ -170,12 +196,20 @@ export type AssembleEnd =
   | {
       readonly kind: 'to check';
       readonly facts: SettledFacts;
-      readonly certificate: readonly Uint8Array[];
-      readonly sha256: string;
+      /** The file is the head, the chunks that were given away, in order, and the last line (null: none). */
+      readonly head: Uint8Array;
+      readonly last: Uint8Array | null;
+      readonly cpuMs: number;
+    };
+
+export type OpenEnd =
+  | {
+      readonly kind: 'opened';
       /** Cover of every tree of the certificate, in the checker's own addresses. */
       readonly parcels: readonly (ParcelPiece & { readonly tree: number })[];
       readonly cpuMs: number;
-    };
+    }
+  | { readonly kind: 'not accepted'; readonly checker: CheckerWord };
 
 export interface CheckEnd {
   readonly kind: 'done' | 'yielded' | 'stopped';
@@ -185,10 +219,19 @@ export interface CheckEnd {
 
 export interface ConcludeEnd {
   readonly checker: CheckerWord;
+  /** Hash of the bytes that were checked. */
+  readonly sha256: string;
 }
 
 export type AnswerEnd =
-  Refused | { readonly kind: 'answer'; readonly certificate: readonly Uint8Array[]; readonly settled: boolean };
+  | Refused
+  | {
+      readonly kind: 'answer';
+      readonly certificate: readonly Uint8Array[];
+      readonly settled: boolean;
+      /** Why it is open, in words; absent where it is settled. */
+      readonly reason?: string;
+    };
 
 export type JobEnd<J extends Job> = J extends ChooseJob
   ? ChooseEnd
@@ -196,8 +239,10 @@ export type JobEnd<J extends Job> = J extends ChooseJob
     ? ListEnd
     : J extends AssembleJob
       ? AssembleEnd
-      : J extends CheckJob
-        ? CheckEnd
-        : J extends ConcludeJob
-          ? ConcludeEnd
-          : AnswerEnd;
+      : J extends OpenJob
+        ? OpenEnd
+        : J extends CheckJob
+          ? CheckEnd
+          : J extends ConcludeJob
+            ? ConcludeEnd
+            : AnswerEnd;

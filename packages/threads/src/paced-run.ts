@@ -1,12 +1,17 @@
 /**
  * The loop that search and check parcels share: advance a little, look at the command and the clock, leave a
- * checkpoint every few seconds. The clock decides when to report and when to yield, nothing else.
+ * checkpoint every few seconds, sooner where much was found. The clock and what is held decide when to report and when
+ * to yield, nothing else.
  */
 import { CpuMeter } from './cpu-meter.ts';
 import { COMMAND, CUT_ANSWER, type CheckpointMessage, type JobMessage } from './jobs.ts';
 
-/** Work between two looks at the command: a few milliseconds. */
+/** Work between two looks at the command: a few milliseconds. Less while every slice finds much. */
 const SLICE_NODES = 2_000;
+const FIRST_SLICE_NODES = 125;
+/** What one slice may find before slices get shorter, and what is held before it is handed over, whatever the clock says. */
+const SLICE_BYTES = 2 * 1024 * 1024;
+const HELD_BYTES = 8 * 1024 * 1024;
 /** A cut that nobody answers in this time was not recorded. */
 const CUT_PATIENCE_MS = 30_000;
 
@@ -21,15 +26,27 @@ export interface Paceable {
   shorten?(to: readonly number[]): void;
 }
 
-export interface Pace {
-  readonly quantumCpuMs: number;
-  readonly checkpointEveryMs: number;
-  readonly memoryBytes: number;
+/** How a run talks to the process. */
+export interface Talk {
   /** Words shared with the process: [0] command, [1] answer to a cut. */
   readonly words: Int32Array;
   readonly say: (message: JobMessage) => void;
-  /** What was found since the last call, packed for the way. */
-  readonly takeChunks: () => CheckpointMessage['chunks'];
+}
+
+/** What a run has found and nobody has taken yet. */
+export interface Findings {
+  /** Takes them out of the run and packs them. */
+  collect(): void;
+  readonly bytes: number;
+  take(): CheckpointMessage['chunks'];
+}
+
+export interface Pace extends Talk {
+  readonly quantumCpuMs: number;
+  readonly checkpointEveryMs: number;
+  readonly memoryBytes: number;
+  /** Null for a run that only counts. */
+  readonly findings: Findings | null;
 }
 
 export interface PacedEnd {
@@ -56,26 +73,37 @@ export function paceRun(run: Paceable, pace: Pace): PacedEnd {
       cpuMs: cpuMs - told.cpuMs,
       shareDone: run.shareDone,
       nodesPerSecond: cpuMs < 50 ? null : (Number(nodes - start.nodes) * 1000) / cpuMs,
-      chunks: pace.takeChunks(),
+      chunks: pace.findings?.take() ?? [],
     };
     Object.assign(told, { nodes, orbits, cpuMs });
     return out;
   };
   const end = (kind: PacedEnd['kind']): PacedEnd => ({ kind, last: message(), memoryBytes: run.bytes ?? 0 });
 
+  let slice = FIRST_SLICE_NODES;
   for (;;) {
-    const step = run.advance(SLICE_NODES);
+    const step = run.advance(slice);
+    const held = collect(pace.findings);
+    slice = Math.max(1, Math.min(SLICE_NODES, held.now > SLICE_BYTES ? slice >> 1 : slice << 1));
     if (step !== 'more') return end(step);
     const command = Atomics.load(pace.words, 0);
     if (command === COMMAND.stop) return end('stopped');
     if (command === COMMAND.yield || meter.ms > pace.quantumCpuMs) return end('yielded');
     if ((run.bytes ?? 0) > pace.memoryBytes) return end('memory');
     if (command === COMMAND.cut) proposeCut(run, pace);
-    if (performance.now() - lastSaid > pace.checkpointEveryMs) {
+    if (held.inAll > HELD_BYTES || performance.now() - lastSaid > pace.checkpointEveryMs) {
       pace.say(message());
       lastSaid = performance.now();
     }
   }
+}
+
+/** Bytes that the last slice found, and that are held now. */
+function collect(findings: Findings | null): { readonly now: number; readonly inAll: number } {
+  if (findings === null) return { now: 0, inAll: 0 };
+  const before = findings.bytes;
+  findings.collect();
+  return { now: findings.bytes - before, inAll: findings.bytes };
 }
 
 /** Proposes a cut and waits until the process has recorded or refused it: only a recorded cut shortens the run. */

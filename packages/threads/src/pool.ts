@@ -3,7 +3,8 @@ import { existsSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import { MessageChannel } from 'node:worker_threads';
 import { Piscina } from 'piscina';
-import { COMMAND, CUT_ANSWER, type Job, type JobEnd, type JobMessage } from './jobs.ts';
+import { reply } from './asking.ts';
+import { COMMAND, CUT_ANSWER, WORDS, type Job, type JobEnd, type JobMessage } from './jobs.ts';
 
 export interface RunningJob<J extends Job> {
   /** Settles when the thread is done; rejects with `AbortError` after `kill`, or with the thread's fault. */
@@ -13,6 +14,8 @@ export interface RunningJob<J extends Job> {
   /** Asks for a cut; the proposal arrives as a message `cut` and waits for `answerCut`. */
   cut(): void;
   answerCut(recorded: boolean): void;
+  /** The reply to `need` (null after the last piece) or to `keep` (null). */
+  reply(piece: Uint8Array | null): void;
   /** Ends the thread, even in a tight loop. What it did since its last checkpoint is lost. */
   kill(): void;
 }
@@ -39,7 +42,7 @@ export function openThreads(options: { readonly threads: number }): Threads {
   return {
     size: options.threads,
     run<J extends Job>(job: J, onMessage: (message: JobMessage) => void = () => {}): RunningJob<J> {
-      const words = new Int32Array(new SharedArrayBuffer(8));
+      const words = new Int32Array(new SharedArrayBuffer(4 * WORDS));
       const { port1, port2 } = new MessageChannel();
       const abort = new AbortController();
       // the thread's last word is null: then every message before it has been delivered
@@ -59,6 +62,7 @@ export function openThreads(options: { readonly threads: number }): Threads {
           Atomics.store(words, 1, recorded ? CUT_ANSWER.recorded : CUT_ANSWER.refused);
           Atomics.notify(words, 1);
         },
+        reply: (piece) => reply(port1, words, piece),
         kill: () => abort.abort(),
       };
     },

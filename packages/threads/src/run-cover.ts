@@ -4,6 +4,11 @@
  */
 import type { CheckEnd, CheckJob, CheckpointMessage, Interval, ListEnd, ListJob } from './jobs.ts';
 import type { RunningJob, Threads } from './pool.ts';
+import { runServed, type Shelf } from './serve.ts';
+import type { Place, Spool } from './spool.ts';
+
+/** How jobs run where nobody else waits for the threads. */
+export const PACE_HERE = { quantumCpuMs: 60_000, checkpointEveryMs: 500 } as const;
 
 export interface Piece extends Interval {
   /** Which tree, where a cover is one of several trees. */
@@ -14,7 +19,8 @@ export interface CoverEnd {
   readonly kind: 'done' | 'found' | 'spent';
   /** Counts for each tree number (0 where pieces name none). */
   readonly counts: readonly { nodes: bigint; orbits: bigint }[];
-  readonly chunks: readonly Uint8Array[];
+  /** Places in the spool of what was found, in address order. */
+  readonly chunks: readonly Place[];
   readonly cpuMs: number;
   readonly reason?: string;
 }
@@ -25,7 +31,7 @@ interface Held {
   checkpoint: string | null;
   nodes: bigint;
   orbits: bigint;
-  chunks: Uint8Array[];
+  chunks: Place[];
   job?: RunningJob<ListJob | CheckJob>;
 }
 
@@ -34,6 +40,10 @@ export interface CoverOptions {
   readonly pieces: readonly Piece[];
   readonly makeJob: (piece: Piece, checkpoint: string | null) => ListJob | CheckJob;
   readonly limitCpuMs: number;
+  /** What the jobs ask for. */
+  readonly shelf: Shelf;
+  /** Where goes what is found. */
+  readonly spool: Spool;
 }
 
 export async function runCover(options: CoverOptions): Promise<CoverEnd> {
@@ -56,7 +66,7 @@ export async function runCover(options: CoverOptions): Promise<CoverEnd> {
     h.checkpoint = message.checkpoint;
     h.nodes += message.nodes;
     h.orbits += message.orbits;
-    h.chunks.push(...message.chunks.map((c) => c.raw));
+    h.chunks.push(...message.chunks.map((c) => options.spool.keep(c.raw)));
     cpuMs += message.cpuMs;
     if (cpuMs > options.limitCpuMs) finishWith('spent', 'the budget of CPU time is used up');
   };
@@ -73,7 +83,7 @@ export async function runCover(options: CoverOptions): Promise<CoverEnd> {
         continue;
       }
       next.state = 'running';
-      const job = options.threads.run(options.makeJob(next.piece, next.checkpoint), (message) => {
+      const job = runServed(options.threads, options.makeJob(next.piece, next.checkpoint), options.shelf, (message) => {
         if (message.kind === 'checkpoint') return take(next, message);
         if (message.mid === null) return;
         const rest: Piece = { ...next.piece, from: message.mid };
@@ -95,7 +105,10 @@ export async function runCover(options: CoverOptions): Promise<CoverEnd> {
       next.state = done.kind === 'done' || done.kind === 'found' ? 'done' : 'waiting';
       if (done.kind === 'found') finishWith('found');
       if (done.kind === 'memory')
-        finishWith('spent', `the memory bound of a thread is reached at ${done.memoryBytes} bytes`);
+        finishWith(
+          'spent',
+          `a thread's bound of memory is used up (${Math.ceil(done.memoryBytes / 1024 / 1024)} MiB counted)`,
+        );
     }
   }
   await Promise.all(Array.from({ length: options.threads.size }, work));

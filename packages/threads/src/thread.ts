@@ -1,5 +1,6 @@
 /** The thread file that piscina loads: one job at a time, talking over its own port. No database here. */
 import type { MessagePort } from 'node:worker_threads';
+import { askOver } from './asking.ts';
 import type { Job, JobEnd } from './jobs.ts';
 import { runJob } from './run-job.ts';
 
@@ -10,8 +11,13 @@ export interface ThreadTask {
 }
 
 export default function runTask(task: ThreadTask): JobEnd<Job> {
+  const words = new Int32Array(task.words);
   try {
-    return runJob(task.job, { words: new Int32Array(task.words), say: (message) => task.port.postMessage(message) });
+    return runJob(task.job, {
+      words,
+      say: (message) => task.port.postMessage(message),
+      ask: askOver(task.port, words),
+    });
   } finally {
     task.port.postMessage(null);
   }

@@ -52,28 +52,3 @@ export async function certificateOf(sql: Sql, questionId: string): Promise<Certi
     chunks: readBlobs(sql, 'select no, blob_sha256 from certificate_chunk where certificate_sha256 = $1', found.sha256),
   };
 }
-
-/** A certificate that is still being checked in parcels. */
-export async function keepDraft(
-  database: Sql & { transaction<T>(work: (tx: Sql) => Promise<T>): Promise<T> },
-  searchId: string,
-  raw: readonly Uint8Array[],
-): Promise<void> {
-  const { hashes } = await keepBlobs(database, raw);
-  await database.transaction(async (tx) => {
-    await tx.query('select 1 from search where id = $1 for no key update', [searchId]);
-    await tx.change('delete from draft_chunk where search_id = $1', [searchId]);
-    await tx.change(
-      `insert into draft_chunk (search_id, no, blob_sha256)
-       select $1, t.no - 1, t.sha256 from unnest($2::text[]) with ordinality t(sha256, no)`,
-      [searchId, hashes],
-    );
-  });
-}
-
-export async function readDraft(sql: Sql, searchId: string): Promise<Uint8Array[]> {
-  const raw: Uint8Array[] = [];
-  for await (const piece of readBlobs(sql, 'select no, blob_sha256 from draft_chunk where search_id = $1', searchId))
-    raw.push(piece);
-  return raw;
-}

@@ -4,6 +4,7 @@
  */
 import { SEARCH_TRANSITIONS } from '@palmette/contracts';
 import { insertCertificate, keepCertificate } from '../certificates/certificates.ts';
+import { draftToCertificate } from '../certificates/drafts.ts';
 import type { Transaction } from '../database.ts';
 import type { LetterWriter, VerdictWrite } from '../door.ts';
 import { touchStudy } from '../studies/touch-study.ts';
@@ -22,13 +23,15 @@ export async function settle(
   letters: LetterWriter,
 ): Promise<boolean> {
   const { certificate } = verdict;
-  const kept = await keepCertificate(context.database, certificate);
+  const { raw, sha256 } = certificate;
+  const kept = raw === 'draft' ? null : await keepCertificate(context.database, { sha256, raw });
   return end(context, searchId, 'settled', letters, async (tx) => {
-    await insertCertificate(tx, kept);
+    if (kept === null) await draftToCertificate(tx, searchId, sha256);
+    else await insertCertificate(tx, kept);
     await tx.change(
       `insert into search_certificate (search_id, certificate_sha256, checker_line, checker_revision, check_cpu_ms)
        values ($1, $2, $3, $4, $5)`,
-      [searchId, kept.sha256, certificate.checkerLine, certificate.checkerRevision, Math.round(certificate.checkCpuMs)],
+      [searchId, sha256, certificate.checkerLine, certificate.checkerRevision, Math.round(certificate.checkCpuMs)],
     );
     await tx.change(
       `update search set verdict = $2, ground = $3, complete = $4, rank = coalesce(rank, $5), dimension = $6, orbits = $7,

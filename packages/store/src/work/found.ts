@@ -1,38 +1,30 @@
 /** What the parcels of a stage counted and found, in address order. */
 import { inflate } from '../certificates/blobs.ts';
 import type { Sql } from '../database.ts';
-import type { WorkStore } from '../door.ts';
+import type { FoundChunk, FoundPlace, WorkStore } from '../door.ts';
 
-/** Chunks are at most 1 MiB raw: this many are fetched at once. */
-const CHUNKS_AT_ONCE = 16;
-
-interface ChunkRow {
-  parcel_id: string;
-  position: string;
-  no: number;
-  records: number;
-  gz: Buffer;
-}
-
-export async function* found(
+/** The next chunk, at most about 1 MiB: the list of a search can be longer than any memory. */
+export async function found(
   sql: Sql,
   searchId: string,
   stage: number,
-): AsyncGenerator<{ records: number; raw: Uint8Array }> {
-  for (let after: readonly [string, string, number] = ['{}', '-1', -1]; ;) {
-    const rows = await sql.query<ChunkRow>(
-      `select p.id as parcel_id, p.from_address::text as position, c.no, c.records, c.gz
-       from parcel p join parcel_chunk c on c.parcel_id = p.id and c.no < p.chunks
-       where p.search_id = $1 and p.phase = 'listing' and p.stage = $2
-         and (p.from_address, p.id, c.no) > ($3::bigint[], $4::bigint, $5::int)
-       order by p.from_address, p.id, c.no limit ${CHUNKS_AT_ONCE}`,
-      [searchId, stage, ...after],
-    );
-    for (const { records, gz } of rows) yield { records, raw: await inflate(gz) };
-    const last = rows.at(-1);
-    if (last === undefined || rows.length < CHUNKS_AT_ONCE) return;
-    after = [last.position, last.parcel_id, last.no];
-  }
+  after: FoundPlace | null,
+): Promise<FoundChunk | null> {
+  const { from, parcelId, no } = after ?? { from: '{}', parcelId: '-1', no: -1 };
+  const [row] = await sql.query<{ parcel_id: string; position: string; no: number; records: number; gz: Buffer }>(
+    `select p.id as parcel_id, p.from_address::text as position, c.no, c.records, c.gz
+     from parcel p cross join lateral (
+       select no, records, gz from parcel_chunk
+       where parcel_id = p.id and no < p.chunks and (p.id <> $4::bigint or no > $5::int)
+       order by no limit 1) c
+     where p.search_id = $1 and p.phase = 'listing' and p.stage = $2
+       and (p.from_address, p.id) >= ($3::bigint[], $4::bigint)
+     order by p.from_address, p.id limit 1`,
+    [searchId, stage, from, parcelId, no],
+  );
+  if (row === undefined) return null;
+  const place = { from: row.position, parcelId: row.parcel_id, no: row.no };
+  return { place, records: row.records, raw: await inflate(row.gz) };
 }
 
 interface ParcelRow {

@@ -1,5 +1,6 @@
 /** What a station asks of the store: one line a verb, each verb in a file of its own. */
-import { keepDraft, readDraft } from '../certificates/certificates.ts';
+import { keepBlobs } from '../certificates/blobs.ts';
+import { draftPiece, keepDraft } from '../certificates/drafts.ts';
 import type { WorkStore } from '../door.ts';
 import { checkpoint } from './checkpoint.ts';
 import { claim } from './claim.ts';
@@ -25,10 +26,11 @@ export function openWork(context: WorkContext): WorkStore {
     finish: (lease, write, result) => finish(context, lease, write, result),
     witness: (lease, write) => witness(context, lease, write),
     goOn: (searchId, next) => goOn(context, searchId, next),
-    found: (searchId, stage) => found(database, searchId, stage),
+    found: (searchId, stage, after) => found(database, searchId, stage, after),
     parcels: parcels(database),
-    keepDraft: (searchId, raw) => keepDraft(database, searchId, raw),
-    draft: (searchId) => readDraft(database, searchId),
+    keepBytes: async (raw) => (await keepBlobs(database, [raw])).hashes,
+    keepDraft: (searchId, pieces) => keepDraft(database, searchId, pieces),
+    draft: (searchId, no) => draftPiece(database, searchId, no),
     settle: (searchId, verdict, letters) => settle(context, searchId, verdict, letters),
     spend: (searchId, reason, letters, onlyIfUsedUp = false) => spend(context, searchId, reason, letters, onlyIfUsedUp),
     broken: (searchId, reason, letters) => broken(context, searchId, reason, letters),
