@@ -59,9 +59,10 @@ const CASES: readonly (readonly [string, Uint8Array, RegExp])[] = [
     certificateOf(pretzel(2, 2, -2, -2), { excess: 0 }),
     /nullity 1.*3 orbits, 1152 in all/,
   ],
-  ['E8 in any', certificateOf(e8, { any: true }), /does not embed in any dimension, by exhaustion/],
+  ['E8 in any', certificateOf(e8, { any: true }), /does not embed in any dimension, by column/],
   ['E8, least', certificateOf(e8, { least: {} }), /does not embed in any dimension/],
-  ['E8, least up to 9', certificateOf(e8, { least: { upTo: 9 } }), /does not embed in dimension 9/],
+  ['E8, least up to 9', certificateOf(e8, { least: { upTo: 9 } }), /does not embed in any dimension/],
+  ['E8 in Z^10', certificateOf(e8, { dimension: 10 }), /does not embed in dimension 10, by column/],
   [
     'A_3 in any',
     certificateOf(
@@ -76,6 +77,43 @@ const CASES: readonly (readonly [string, Uint8Array, RegExp])[] = [
       { any: true },
     ),
     /2 orbits, complete/,
+  ],
+  [
+    '18/5 in Z^4 by frames',
+    certificateOf(fraction(18, 5), { dimension: 4 }, { method: 'frames' }),
+    /2 orbits, 576 in all/,
+  ],
+  [
+    '18/5 in Z^5 by frames',
+    certificateOf(fraction(18, 5), { dimension: 5 }, { method: 'frames' }),
+    /in dimension 5: \d+ orbits/,
+  ],
+  [
+    '18/5 in Z^6 by columns',
+    certificateOf(fraction(18, 5), { dimension: 6 }, { method: 'columns' }),
+    /in dimension 6: \d+ orbits/,
+  ],
+  ['18/5 in any by columns', certificateOf(fraction(18, 5), { any: true }, { method: 'columns' }), /orbits, complete/],
+  [
+    '49/20 in Z^7, two methods',
+    certificateOf(fraction(49, 20), { dimension: 7 }, { secondOpinion: true }),
+    /complete; two methods agree: /,
+  ],
+  [
+    '[7, 7, 7] in Z^4, no embedding, two methods',
+    certificateOf(
+      {
+        kind: 'matrix',
+        rows: [
+          [7, 1, 1],
+          [1, 7, 1],
+          [1, 1, 7],
+        ],
+      },
+      { dimension: 4 },
+      { secondOpinion: true },
+    ),
+    /two methods agree|by /,
   ],
   ['25/2', certificateOf(fraction(25, 2), { dimension: 2 }), /1 orbit, 8 in all/],
   ['18/5 in Z^4', certificateOf(fraction(18, 5), { dimension: 4 }), /2 orbits, 576 in all/],

@@ -19,17 +19,19 @@ export function ratio(n: bigint, d: bigint): Ratio {
   return { n: n / g, d: d / g };
 }
 
-/** Largest s with s² ≤ a. */
+/** Largest s with s² ≤ a: Newton's iteration from a guess in doubles, then the last step exactly. */
 export function rootOf(a: bigint): bigint {
   if (a < 2n) return a;
-  let low = 1n;
-  let high = 1n << BigInt(Math.ceil(a.toString(2).length / 2) + 1);
-  while (high - low > 1n) {
-    const middle = (low + high) >> 1n;
-    if (middle * middle <= a) low = middle;
-    else high = middle;
+  const guess = Math.sqrt(Number(a));
+  let s = Number.isFinite(guess) ? BigInt(Math.floor(guess)) : 1n << BigInt(a.toString(2).length >> 1);
+  for (let moved = true; moved;) {
+    const next = (s + a / s) >> 1n;
+    moved = next - s > 1n || s - next > 1n;
+    s = next;
   }
-  return low;
+  while (s * s > a) s -= 1n;
+  while ((s + 1n) * (s + 1n) <= a) s += 1n;
+  return s;
 }
 
 /** Product of integer matrices that skips zeros of both factors. */

@@ -3,7 +3,7 @@
  * in parcels; then the last line. Everything before the trees is `openCheck`.
  */
 import { checkEmbeddings, testNames, type CheckedList } from './embeddings.ts';
-import { checkExclusion, checkListTree, type CheckedExclusion } from './evidence.ts';
+import { checkExclusion, checkListTree, checkSecondTree, type CheckedExclusion } from './evidence.ts';
 import { openFile } from './file.ts';
 import { checkLattice, type CheckedLattice } from './lattice.ts';
 import { readClaim, readQuestion, type Claim } from './question.ts';
@@ -11,7 +11,7 @@ import { listOf, NotChecked, objectOf, Rejection, stringIntegerOf, type Json } f
 import { openCheckRun, type CheckTree } from './tree.ts';
 
 /** Raised when what the checker verifies, its last line or its checkpoints change. */
-export const CHECKER_REVISION = 2;
+export const CHECKER_REVISION = 3;
 
 export interface Outcome {
   readonly verdict: 'VERIFIED' | 'REJECTED' | 'NOT CHECKED';
@@ -59,28 +59,38 @@ export interface CheckOptions {
 }
 
 const SLICE_NODES = 20_000;
+/** A node of a tree of columns costs as much as its list is long. */
+const SLICE_VECTORS = 16;
 
 /** The whole check in one go. Bytes are uncompressed. */
 export function check(bytes: Uint8Array, options: CheckOptions = {}): Outcome {
   const opened = openCheck(bytes);
   if ('outcome' in opened) return opened.outcome;
-  const { trees } = opened.work;
+  try {
+    return concludeCheck(opened.work, countTrees(opened.work.trees, options));
+  } catch (error) {
+    return outcomeOf(error);
+  }
+}
+
+function countTrees(trees: readonly CheckTree[], options: CheckOptions): TreeCount[] {
   const counts = trees.map((tree, i): TreeCount => {
     const run = openCheckRun(tree, { from: [], to: null });
-    while (run.advance(SLICE_NODES) === 'more' && run.nodes <= tree.nodes) {
-      options.progress?.((i + Number(run.nodes) / Math.max(1, Number(tree.nodes))) / trees.length);
-    }
+    const slice = tree.method === 'rows' ? SLICE_NODES : SLICE_VECTORS;
+    while (run.advance(slice) === 'more' && run.nodes <= tree.nodes && run.orbits <= tree.orbits)
+      options.progress?.((i + run.shareDone) / trees.length);
     return { nodes: run.nodes.toString(), orbits: run.orbits.toString() };
   });
   options.progress?.(1);
-  return concludeCheck(opened.work, counts);
+  return counts;
 }
 
 function compareTree(tree: CheckTree, nodes: bigint, orbits: bigint): void {
   if (orbits !== tree.orbits)
     throw new Rejection(`${tree.place}/orbits`, `${orbits} were enumerated, ${tree.orbits} are claimed`);
+  const counted = tree.method === 'rows' ? 'nodes' : 'vectors';
   if (nodes !== tree.nodes)
-    throw new Rejection(`${tree.place}/nodes`, `${nodes} were enumerated, ${tree.nodes} are claimed`);
+    throw new Rejection(`${tree.place}/${counted}`, `${nodes} were enumerated, ${tree.nodes} are claimed`);
 }
 
 function outcomeOf(error: unknown): Outcome {
@@ -104,17 +114,28 @@ function readWork(bytes: Uint8Array): CheckWork {
   const list = checkEmbeddings(file, lattice, claim.target.kind === 'any' ? null : claim.dimension);
   const overall = testNames(file.head['tests'], '/tests');
   const trees: CheckTree[] = [];
-  const evidence = objectOf(file.head['evidence'], '/evidence', ['exclusions', 'list']);
+  const asked = question['secondOpinion'] === true;
+  const evidence = objectOf(file.head['evidence'], '/evidence', ['exclusions', 'list', ...(asked ? ['second'] : [])]);
   const exclusions = listOf(evidence['exclusions'], '/evidence/exclusions').map((x, i) =>
     checkExclusion(lattice, x, `/evidence/exclusions/${i}`, trees),
   );
   checkClaim(claim, lattice, list, exclusions, evidence['list']!, trees);
+  const second = asked ? checkSecondTree(lattice, evidence['second'], carrier(claim, trees), '/evidence/second') : null;
+  if (second !== null) trees.push(second);
   const unverified = [...new Set([...overall, ...list.unverifiedTests])];
   return {
     trees,
     words:
-      claimWords(claim, lattice, list) + (unverified.length > 0 ? `; tests not checked: ${unverified.join(', ')}` : ''),
+      claimWords(claim, lattice, list) +
+      (second === null ? '' : `; two methods agree: ${carrier(claim, trees)!.method} and ${second.method}`) +
+      (unverified.length > 0 ? `; tests not checked: ${unverified.join(', ')}` : ''),
   };
+}
+
+/** The tree that shows what the claim says: the list's, which comes last, or that of the exclusion. */
+function carrier(claim: Claim, trees: readonly CheckTree[]): CheckTree | undefined {
+  if (!claim.complete) return undefined;
+  return trees.find((t) => t.place === (claim.verdict === 'embeds' ? '/evidence/list' : '/evidence/exclusions/0/tree'));
 }
 
 /** FORMAT.md, section 5: which parts belong to which claim. */

@@ -5,7 +5,7 @@ import { BIGINTS, DOUBLES, type Kind } from './int-kinds.ts';
 import { sparseChild, type SparseNode } from './sparse-columns.ts';
 import { SparseListing } from './sparse-listing.ts';
 import { END } from './steps.ts';
-import { openCheckRun, splitCheck, type CheckInterval, type CheckTree } from './tree.ts';
+import { openCheckRun, splitCheck, type CheckInterval, type CheckRowsTree } from './tree.ts';
 
 function numbers(seed: number): (below: number) => number {
   let state = seed;
@@ -15,18 +15,18 @@ function numbers(seed: number): (below: number) => number {
   };
 }
 
-function treeOf(gram: readonly (readonly (number | bigint)[])[], dimension: number): CheckTree {
-  return { place: '/', dimension, gram: gram.map((row) => row.map(BigInt)), nodes: 0n, orbits: 0n };
+function treeOf(gram: readonly (readonly (number | bigint)[])[], dimension: number): CheckRowsTree {
+  return { place: '/', method: 'rows', dimension, gram: gram.map((row) => row.map(BigInt)), nodes: 0n, orbits: 0n };
 }
 
-function wholeOf(tree: CheckTree): { nodes: bigint; orbits: bigint } {
+function wholeOf(tree: CheckRowsTree): { nodes: bigint; orbits: bigint } {
   const run = openCheckRun(tree, { from: [], to: null });
   while (run.advance(1_000) === 'more');
   return { nodes: run.nodes, orbits: run.orbits };
 }
 
 /** Counts with `SparseListing` alone. */
-function sparseOf(tree: CheckTree, kind: Kind): { nodes: bigint; orbits: bigint } {
+function sparseOf(tree: CheckRowsTree, kind: Kind): { nodes: bigint; orbits: bigint } {
   const { gram } = tree;
   const count = { nodes: 0n, orbits: 0n };
   const visit = (node: SparseNode, depth: number) => {
@@ -196,7 +196,7 @@ describe('shapes that could hang or overflow', () => {
     const gram = Array.from({ length: r }, (_, i) =>
       Array.from({ length: r }, (_, j) => (i === j ? 2n : Math.abs(i - j) === 1 ? -1n : 0n)),
     );
-    const whole = wholeOf({ place: '/', dimension: r + 1, gram, nodes: 0n, orbits: 0n });
+    const whole = wholeOf({ place: '/', method: 'rows', dimension: r + 1, gram, nodes: 0n, orbits: 0n });
     // A_3 in Z^n, n ≥ 4, has a second orbit (two columns used twice), which A_4 does not continue
     expect(whole).toEqual({ nodes: BigInt(r) + 2n, orbits: 1n });
   });
@@ -207,7 +207,7 @@ describe('shapes that could hang or overflow', () => {
 });
 
 describe('cut and interrupted', () => {
-  const runThrough = (tree: CheckTree, interval: CheckInterval, slices: () => number) => {
+  const runThrough = (tree: CheckRowsTree, interval: CheckInterval, slices: () => number) => {
     let run = openCheckRun(tree, interval);
     while (run.advance(slices()) === 'more') {
       const checkpoint = run.checkpoint();

@@ -8,7 +8,7 @@ import { MAX_WIDTH, ProjectionListing } from './projection-listing.ts';
 import { sparseChild, type Column, type SparseNode } from './sparse-columns.ts';
 import { SparseListing } from './sparse-listing.ts';
 import { END, FOUND, type Steps } from './steps.ts';
-import type { CheckInterval, CheckRun, CheckTree } from './tree.ts';
+import type { CheckInterval, CheckRowsTree, CheckRun } from './tree.ts';
 
 /** Norms below this keep every product that `SparseListing` forms below 2^53. */
 const DOUBLE_BOUND = 2n ** 25n;
@@ -39,7 +39,7 @@ export class Enumeration implements CheckRun {
   private readonly projections: readonly ProjectionListing[];
   private readonly projectionRows: readonly Float64Array[];
   private readonly kind: Kind;
-  private readonly gram: CheckTree['gram'];
+  private readonly gram: CheckRowsTree['gram'];
   /** The listing below the node at each depth of the path. */
   private readonly levels: Level[] = [];
   private readonly path: number[] = [];
@@ -47,7 +47,7 @@ export class Enumeration implements CheckRun {
   private readonly steps: Steps = { left: 0 };
 
   constructor(
-    tree: CheckTree,
+    tree: CheckRowsTree,
     private readonly interval: CheckInterval,
     checkpoint?: string,
   ) {

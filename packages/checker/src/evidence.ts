@@ -2,7 +2,19 @@
 import { times, turned, type Matrix } from './arithmetic.ts';
 import { checkDeterminantGround, checkDimensionGround, checkHilbertGround } from './grounds.ts';
 import { readStringMatrix, type CheckedLattice } from './lattice.ts';
-import { countOf, listOf, NotChecked, objectOf, oneOf, Rejection, stringIntegerOf, type Json } from './reading.ts';
+import { dualForm } from './dual-form.ts';
+import { listColumns, spanOf } from './dual-columns.ts';
+import {
+  countOf,
+  listOf,
+  NotChecked,
+  objectOf,
+  oneOf,
+  Rejection,
+  stringIntegerOf,
+  type Json,
+  type JsonObject,
+} from './reading.ts';
 import type { CheckTree } from './tree.ts';
 
 export interface CheckedExclusion {
@@ -10,7 +22,8 @@ export interface CheckedExclusion {
   readonly ground: string;
 }
 
-const GROUNDS = ['dimension', 'determinant', 'hilbert', 'exhaustion'] as const;
+const GROUNDS = ['dimension', 'determinant', 'hilbert', 'column', 'exhaustion'] as const;
+const METHODS = ['rows', 'columns', 'frames'] as const;
 
 /** Checks one exclusion as far as no tree is needed; a tree is appended to `trees`. */
 export function checkExclusion(
@@ -23,7 +36,14 @@ export function checkExclusion(
   if (typeof name === 'string' && !(GROUNDS as readonly string[]).includes(name))
     throw new NotChecked(`the ground ${JSON.stringify(name)} is not known here`);
   const ground = oneOf(name, `${place}/ground`, GROUNDS);
-  const extra = ground === 'hilbert' ? ['primes'] : ground === 'exhaustion' ? ['tree'] : [];
+  const extra =
+    ground === 'hilbert'
+      ? ['primes']
+      : ground === 'column'
+        ? ['basis', 'vectors', 'spanned']
+        : ground === 'exhaustion'
+          ? ['tree']
+          : [];
   const o = objectOf(value, place, ['dimension', 'ground', ...extra]);
   const dimension = o['dimension'] === null ? null : countOf(o['dimension'], `${place}/dimension`);
   if (ground === 'exhaustion') {
@@ -31,6 +51,10 @@ export function checkExclusion(
     checkWidth(tree, dimension, `${place}/tree/dimension`);
     if (tree.orbits !== 0n) throw new Rejection(`${place}/tree/orbits`, 'an exclusion has no orbit');
     trees.push(tree);
+    return { dimension, ground };
+  }
+  if (ground === 'column') {
+    checkColumnGround(lattice, dimension, o, place);
     return { dimension, ground };
   }
   if (dimension === null) throw new Rejection(`${place}/dimension`, `the ground ${ground} speaks about one n`);
@@ -52,34 +76,86 @@ export function checkListTree(
   return tree;
 }
 
-/** n itself, or for every n at least the trace of the working Gram (rule A). */
-function checkWidth(tree: CheckTree, dimension: number | null, place: string): void {
+/** The admissible columns do not span: they are listed again. */
+function checkColumnGround(lattice: CheckedLattice, n: number | null, o: JsonObject, place: string): void {
+  const { rank } = lattice;
+  if (rank === 0 || (n !== null && n < rank)) throw new Rejection(place, 'the ground column speaks at n ≥ rank > 0');
+  const form = dualForm(readWorkingGram(lattice, o['basis'], `${place}/basis`));
+  const columns = listColumns(form, n === rank ? 'unit' : 'all');
+  const vectors = stringIntegerOf(o['vectors'], `${place}/vectors`);
+  if (vectors !== BigInt(columns.admissible))
+    throw new Rejection(`${place}/vectors`, `${columns.admissible} were enumerated, ${vectors} are claimed`);
+  const spanned = countOf(o['spanned'], `${place}/spanned`);
+  const found = spanOf(form, columns);
+  if (found >= rank) throw new Rejection(place, 'the admissible columns span');
+  if (spanned !== found) throw new Rejection(`${place}/spanned`, `expected ${found}`);
+}
+
+/** The tree of another method that says the same as the first, or null. */
+export function checkSecondTree(
+  lattice: CheckedLattice,
+  value: Json | undefined,
+  first: CheckTree | undefined,
+  place: string,
+): CheckTree | null {
+  if (value === null) return null;
+  const tree = readTree(lattice, value, place);
+  if (first === undefined) throw new Rejection(place, 'expected null: no tree carries the claim');
+  if (tree.method === first.method) throw new Rejection(`${place}/method`, 'expected another method');
+  const every = isForEvery(first);
+  if (every ? !isForEvery(tree) : tree.dimension !== first.dimension)
+    throw new Rejection(`${place}/dimension`, 'expected that of the first tree');
+  if (tree.orbits !== first.orbits) throw new Rejection(`${place}/orbits`, `expected ${first.orbits}`);
+  return tree;
+}
+
+/** Does the tree list the embeddings in every Z^n: columns of any number, rows at n of at least the trace (rule A)? */
+function isForEvery(tree: CheckTree): boolean {
   const trace = tree.gram.reduce((sum, row, i) => sum + row[i]!, 0n);
-  if (dimension === null ? BigInt(tree.dimension) < trace : tree.dimension !== dimension) {
-    throw new Rejection(place, dimension === null ? `expected at least the trace ${trace}` : `expected ${dimension}`);
-  }
+  return tree.dimension === null || (tree.method === 'rows' && BigInt(tree.dimension) >= trace);
+}
+
+function checkWidth(tree: CheckTree, dimension: number | null, place: string): void {
+  if (dimension !== null && tree.dimension !== dimension) throw new Rejection(place, `expected ${dimension}`);
+  if (dimension === null && !isForEvery(tree)) throw new Rejection(place, 'expected at least the trace, or null');
 }
 
 function readTree(lattice: CheckedLattice, value: Json | undefined, place: string): CheckTree {
-  const method = (value as { method?: Json } | null)?.method;
-  if (typeof method === 'string' && method !== 'rows')
-    throw new NotChecked(`the method ${JSON.stringify(method)} is not known here`);
-  const o = objectOf(value, place, ['method', 'revision', 'dimension', 'basis', 'order', 'nodes', 'orbits']);
-  if (method !== 'rows') throw new Rejection(`${place}/method`, 'expected rows');
+  const name = (value as { method?: Json } | null)?.method;
+  if (typeof name === 'string' && !(METHODS as readonly string[]).includes(name))
+    throw new NotChecked(`the method ${JSON.stringify(name)} is not known here`);
+  const method = oneOf(name, `${place}/method`, METHODS);
+  const counted = method === 'rows' ? ['order', 'nodes'] : ['vectors'];
+  const o = objectOf(value, place, ['method', 'revision', 'dimension', 'basis', ...counted, 'orbits']);
   if (countOf(o['revision'], `${place}/revision`) !== 1)
-    throw new NotChecked(`revision ${String(o['revision'])} of the method rows is not known here`);
-  const dimension = countOf(o['dimension'], `${place}/dimension`);
+    throw new NotChecked(`revision ${String(o['revision'])} of the method ${method} is not known here`);
+  const dimension =
+    method === 'columns' && o['dimension'] === null ? null : countOf(o['dimension'], `${place}/dimension`);
   const working = readWorkingGram(lattice, o['basis'], `${place}/basis`);
-  const order = listOf(o['order'], `${place}/order`).map((w, i) => countOf(w, `${place}/order/${i}`));
-  if (order.length !== lattice.rank || new Set(order).size !== lattice.rank || order.some((w) => w >= lattice.rank))
-    throw new Rejection(`${place}/order`, `expected a permutation of ${lattice.rank} rows`);
+  const orbits = stringIntegerOf(o['orbits'], `${place}/orbits`);
+  if (method === 'rows') {
+    const order = readOrder(lattice.rank, o['order'], `${place}/order`);
+    const nodes = stringIntegerOf(o['nodes'], `${place}/nodes`);
+    return { place, method, dimension, gram: order.map((v) => order.map((w) => working[v]![w]!)), nodes, orbits };
+  }
+  const excess = dimension === null ? null : dimension - lattice.rank;
+  if (method === 'frames' && (excess === null || excess < 0 || excess > 2))
+    throw new Rejection(`${place}/dimension`, 'frames are for n = rank, rank + 1, rank + 2');
   return {
     place,
+    method,
     dimension,
-    gram: order.map((v) => order.map((w) => working[v]![w]!)),
-    nodes: stringIntegerOf(o['nodes'], `${place}/nodes`),
-    orbits: stringIntegerOf(o['orbits'], `${place}/orbits`),
+    gram: working,
+    nodes: stringIntegerOf(o['vectors'], `${place}/vectors`),
+    orbits,
   };
+}
+
+function readOrder(rank: number, value: Json | undefined, place: string): number[] {
+  const order = listOf(value, place).map((w, i) => countOf(w, `${place}/${i}`));
+  if (order.length !== rank || new Set(order).size !== rank || order.some((w) => w >= rank))
+    throw new Rejection(place, `expected a permutation of ${rank} rows`);
+  return order;
 }
 
 /** W with Uᵀ·gram·U = W ⊕ 0; that U·V = 1 shows that U is unimodular. */

@@ -15,6 +15,10 @@ export interface Kind {
   /** Largest s with s² ≤ a; a is below 2^53 where the kind is doubles. */
   readonly root: (a: Int) => Int;
   readonly half: (a: Int) => Int;
+  /** Some s with s² > a, at most 2 above the root and a 2^-40 part of it. */
+  readonly rootAbove: (a: Int) => Int;
+  /** a/d rounded down; d > 0. In doubles d·quotient has to be below 2^53. */
+  readonly floorQuotient: (a: Int, d: Int) => Int;
 }
 
 /** Largest s with s² ≤ a, for 0 ≤ a < 2^53. A root that is an integer is never rounded below itself. */
@@ -31,6 +35,11 @@ export const DOUBLES: Kind = {
   fromBig: Number,
   root: floorRoot,
   half: (a) => Math.floor(a / 2),
+  rootAbove: (a) => Math.floor(Math.sqrt(a) * (1 + 2 ** -42)) + 2,
+  floorQuotient: (a, d) => {
+    const q = Math.floor(a / d);
+    return q * d > a ? q - 1 : (q + 1) * d <= a ? q + 1 : q;
+  },
 };
 
 export const BIGINTS = {
@@ -40,4 +49,6 @@ export const BIGINTS = {
   fromBig: (x: bigint) => x,
   root: rootOf,
   half: (a: bigint) => a / 2n,
+  rootAbove: (a: bigint) => rootOf(a) + 1n,
+  floorQuotient: (a: bigint, d: bigint) => (a >= 0n ? a / d : -((d - 1n - a) / d)),
 } as unknown as Kind;

@@ -27,13 +27,17 @@ const TESTS = [
   'dInvariants',
   'doubleOrbits',
 ];
-const GROUNDS = ['embedding', 'exhaustion', 'dimension', 'determinant', 'hilbert'];
+const GROUNDS = ['embedding', 'exhaustion', 'dimension', 'determinant', 'hilbert', 'column'];
+const METHODS = ['rows', 'columns', 'frames'];
 
 export function readQuestion(value: Json | undefined): JsonObject {
-  const q = objectOf(value, '/question', ['format', 'source', 'target', 'scope', 'tests']);
+  const q = objectOf(value, '/question', ['format', 'source', 'target', 'scope', 'tests', 'method?', 'secondOpinion?']);
   if (q['format'] !== 'palmette.question/1')
     throw new NotChecked(`the question format ${JSON.stringify(q['format'])} is not known here`);
   oneOf(q['scope'], '/question/scope', ['one', 'all']);
+  if (q['method'] !== undefined) oneOf(q['method'], '/question/method', METHODS);
+  if (q['secondOpinion'] !== undefined && q['secondOpinion'] !== true)
+    throw new Rejection('/question/secondOpinion', 'expected true, or nothing');
   const places = listOf(q['tests'], '/question/tests').map((t, i) =>
     TESTS.indexOf(oneOf(t, `/question/tests/${i}`, TESTS)),
   );

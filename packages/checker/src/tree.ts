@@ -1,16 +1,30 @@
-/** The tree of rows as the checker enumerates it: what is asked, and runs over intervals. FORMAT.md, section 7. */
+/** Trees as the checker enumerates them: what is asked, and runs over intervals. FORMAT.md, section 7. */
 import type { Matrix } from './arithmetic.ts';
 import { Enumeration } from './enumeration.ts';
+import { splitVectors, VectorRun } from './vector-run.ts';
 
 /** What has to be enumerated, and what the certificate says about it. */
 export interface CheckTree {
   /** Where the tree stands in the certificate. */
   readonly place: string;
-  readonly dimension: number;
-  /** The working Gram in the order of its rows. */
+  readonly method: 'rows' | 'frames' | 'columns';
+  /** Null: any number of columns. */
+  readonly dimension: number | null;
+  /** The working Gram; of a tree of rows in their order. */
   readonly gram: Matrix;
+  /** Nodes of a tree of rows, admissible columns of the others. */
   readonly nodes: bigint;
   readonly orbits: bigint;
+}
+
+/** A tree of rows. */
+export interface CheckRowsTree extends CheckTree {
+  readonly method: 'rows';
+  readonly dimension: number;
+}
+
+function isRows(tree: CheckTree): tree is CheckRowsTree {
+  return tree.method === 'rows';
 }
 
 /** Nodes from one address to another, in depth-first order; an address is a list of child numbers from the root. */
@@ -31,7 +45,7 @@ export interface CheckRun {
 }
 
 export function openCheckRun(tree: CheckTree, interval: CheckInterval, checkpoint?: string): CheckRun {
-  return new Enumeration(tree, interval, checkpoint);
+  return isRows(tree) ? new Enumeration(tree, interval, checkpoint) : new VectorRun(tree, interval, checkpoint);
 }
 
 /** Cut at a depth with this many nodes for each piece, so that pieces even out. */
@@ -40,6 +54,7 @@ const MOST_NODES_PER_PIECE = 256;
 
 /** At most `pieces` intervals that abut from the root to the end: cut at the nodes of one depth. */
 export function splitCheck(tree: CheckTree, pieces: number): CheckInterval[] {
+  if (!isRows(tree)) return splitVectors(tree, pieces);
   let cuts: (readonly number[])[] = [];
   for (let depth = 1; depth <= tree.gram.length && cuts.length < pieces * NODES_PER_PIECE; depth += 1) {
     const next = nodesAtDepth(tree, depth, pieces * MOST_NODES_PER_PIECE);
@@ -52,8 +67,8 @@ export function splitCheck(tree: CheckTree, pieces: number): CheckInterval[] {
 }
 
 /** Addresses of all nodes at a depth, or null if there are more than `most`. */
-function nodesAtDepth(tree: CheckTree, depth: number, most: number): number[][] | null {
-  const shallow: CheckTree = { ...tree, gram: tree.gram.slice(0, depth).map((row) => row.slice(0, depth)) };
+function nodesAtDepth(tree: CheckRowsTree, depth: number, most: number): number[][] | null {
+  const shallow: CheckRowsTree = { ...tree, gram: tree.gram.slice(0, depth).map((row) => row.slice(0, depth)) };
   const run = new Enumeration(shallow, { from: [], to: null });
   const out: number[][] = [];
   run.onLeaf = (address) => out.push(address);
