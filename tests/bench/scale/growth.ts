@@ -1,26 +1,44 @@
 /**
- * CPU time against rank: for each class and n − r the drawn instances of bench:peers at growing rank, three of each rank,
- * until two of three are over the limit; a growth law is fitted to what was measured.
+ * CPU time against rank: for each class and n − r the instances of bench:peers at growing rank, three of each rank, until two of three are over the limit; a growth law is fitted to what was measured.
  */
 import { bundleCommandLine, ourSolver } from '../peers/ours.ts';
-import { drawSource, instance } from '../peers/instances.ts';
+import { drawSource, instance, type Drawn, type Making } from '../peers/instances.ts';
 import { problemOf } from '../peers/problem.ts';
 import { addRecord, readRecords, recordFile } from '../peers/records.ts';
-import { median, type Answer } from '../peers/solver.ts';
+import { median, type Answer, type Solver } from '../peers/solver.ts';
 import { fitGrowth } from './fit-growth.ts';
 
-const RANKS = {
-  chain: [16, 24, 32, 40, 48, 64],
-  star: [16, 20, 24, 28, 32, 36, 44, 52],
-  scrambled: [8, 9, 10, 11, 12, 13, 14, 15, 16, 18, 20],
-} as const;
-type Kind = keyof typeof RANKS;
-const EXCESSES = [0, 1, 2];
+interface Series {
+  readonly kind: Drawn;
+  readonly how: Making;
+  readonly excess: number;
+  readonly ranks: readonly number[];
+}
+
+const [EVERY, STEEP] = [
+  [16, 24, 32, 40, 48, 64],
+  [8, 9, 10, 11, 12, 13, 14, 15, 16, 18, 20],
+];
+const HEAVY = [12, 16, 20, 24, 26, 28, 30, 32, 36];
+const trees = (kind: 'chain' | 'star'): Series[] => [
+  { kind, how: 'made', excess: 0, ranks: [...EVERY!, 96, 128] },
+  ...[1, 2].flatMap((excess) => [
+    { kind, how: 'drawn' as const, excess, ranks: EVERY! },
+    { kind, how: 'heavy' as const, excess, ranks: HEAVY },
+  ]),
+];
+const SERIES: readonly Series[] = [
+  ...trees('chain'),
+  ...trees('star'),
+  ...[0, 1, 2].flatMap((excess) =>
+    (['drawn', 'heavy'] as const).map((how) => ({ kind: 'scrambled' as const, how, excess, ranks: STEEP! })),
+  ),
+];
+const nameOf = ({ kind, how, excess }: Omit<Series, 'ranks'>) => `${kind} +${excess} ${how}`;
 const VARIANTS = [0, 1, 2];
 
 export interface GrowthRecord extends Answer {
-  readonly kind: Kind;
-  readonly excess: number;
+  readonly series: string;
   readonly rank: number;
   readonly variant: number;
   readonly limit: number;
@@ -49,55 +67,53 @@ function measure({ limit, seconds, only }: GrowthOptions): void {
     const solver = ourSolver(cli);
     if (!readRecords<{ startUp?: number }>(file).some((r) => r.startUp !== undefined))
       addRecord(file, { startUp: median(VARIANTS.map(() => solver.startUp())) });
-    for (const kind of ['chain', 'star', 'scrambled'] as const)
-      for (const excess of EXCESSES)
-        for (const rank of RANKS[kind]) {
-          if (!`${kind} +${excess}`.includes(only)) continue;
-          const known = readRecords<GrowthRecord>(file).filter((r) => r.kind === kind && r.excess === excess);
-          const before = known.filter((r) => r.rank < rank);
-          if (RANKS[kind].some((smaller) => before.filter((r) => r.rank === smaller && isOver(r)).length >= 2)) break;
-          for (const variant of VARIANTS) {
-            if (known.some((r) => r.rank === rank && r.variant === variant)) continue;
-            if ((performance.now() - started) / 1000 > seconds) return;
-            const source = drawSource(kind, rank, excess, false, variant);
-            const question = instance(`${kind} ${rank} +${excess}`, {
-              class: kind,
-              rank,
-              excess,
-              source,
-              scope: 'one',
-            });
-            const answer = solver.solve(problemOf(question), limit);
-            const record: GrowthRecord = { kind, excess, rank, variant, limit, ...answer };
-            addRecord(file, record);
-            console.error(`${question.name} #${variant}: ${answer.outcome} ${answer.cpuSeconds.toFixed(2)} s`);
-          }
-        }
+    const inTime = () => (performance.now() - started) / 1000 <= seconds;
+    for (const series of SERIES.filter((each) => nameOf(each).includes(only)))
+      measureSeries(series, solver, limit, inTime);
   } finally {
     cli.remove();
   }
 }
 
+/** Stops at the first rank of which two of three are over the limit. */
+function measureSeries(series: Series, solver: Solver, limit: number, inTime: () => boolean): void {
+  const { kind, how, excess, ranks } = series;
+  const known = readRecords<GrowthRecord>(file).filter((r) => r.series === nameOf(series));
+  for (const rank of ranks) {
+    for (const variant of VARIANTS) {
+      if (known.some((r) => r.rank === rank && r.variant === variant)) continue;
+      if (!inTime()) return;
+      const source = drawSource(kind, rank, excess, how, variant);
+      const question = instance(nameOf(series), { class: kind, rank, excess, source, scope: 'one' });
+      const answer = solver.solve(problemOf(question), limit);
+      const record: GrowthRecord = { series: nameOf(series), rank, variant, limit, ...answer };
+      known.push(record);
+      addRecord(file, record);
+      console.error(`${record.series} rank ${rank} #${variant}: ${answer.outcome} ${answer.cpuSeconds.toFixed(2)} s`);
+    }
+    if (known.filter((r) => r.rank === rank && isOver(r)).length >= 2) return;
+  }
+}
+
 function printGrowth(all: readonly (GrowthRecord & { startUp?: number })[]): void {
   const startUp = all.find((r) => r.startUp !== undefined)?.startUp ?? 0;
-  const records = all.filter((r) => r.kind !== undefined);
-  console.log(`\nStart-up ${startUp.toFixed(2)} s is taken off. Median of three drawn instances of each rank.\n`);
-  console.log('| class | n − r | CPU seconds at rank | growth |\n|---|---|---|---|');
-  for (const kind of Object.keys(RANKS) as Kind[])
-    for (const excess of EXCESSES) {
-      const group = records.filter((r) => r.kind === kind && r.excess === excess);
-      if (group.length === 0) continue;
-      const points = RANKS[kind].flatMap((rank) => {
-        const here = group.filter((r) => r.rank === rank);
-        if (here.length < VARIANTS.length) return [];
-        const middle = median(here.map((r) => (isOver(r) ? Number.POSITIVE_INFINITY : r.cpuSeconds)));
-        return [{ rank, seconds: Math.max(0, middle - startUp), limit: here[0]!.limit }];
-      });
-      const cells = points.map(({ rank, seconds, limit }) =>
-        Number.isFinite(seconds) ? `${rank}: ${seconds.toFixed(2)}` : `${rank}: > ${limit}`,
-      );
-      console.log(`| ${kind} | ${excess} | ${cells.join(', ')} | ${fitGrowth(points)} |`);
-    }
+  const records = all.filter((r) => r.series !== undefined);
+  console.log(`\nStart-up ${startUp.toFixed(2)} s is taken off. Median of three instances of each rank.\n`);
+  console.log('| class, n − r, how made | CPU seconds at rank | growth |\n|---|---|---|');
+  for (const series of SERIES) {
+    const group = records.filter((r) => r.series === nameOf(series));
+    if (group.length === 0) continue;
+    const points = series.ranks.flatMap((rank) => {
+      const here = group.filter((r) => r.rank === rank);
+      if (here.length < VARIANTS.length) return [];
+      const middle = median(here.map((r) => (isOver(r) ? Number.POSITIVE_INFINITY : r.cpuSeconds)));
+      return [{ rank, seconds: Math.max(0, middle - startUp), limit: here[0]!.limit }];
+    });
+    const cells = points.map(({ rank, seconds, limit }) =>
+      Number.isFinite(seconds) ? `${rank}: ${seconds.toFixed(2)}` : `${rank}: > ${limit}`,
+    );
+    console.log(`| ${nameOf(series)} | ${cells.join(', ')} | ${fitGrowth(points)} |`);
+  }
   printChecks(records, startUp);
 }
 
@@ -108,7 +124,7 @@ function printChecks(records: readonly GrowthRecord[], startUp: number): void {
     if (r.outcome !== 'excluded' || r.cpuSeconds < 1) continue;
     const f = r.figures;
     console.log(
-      `| ${r.kind} ${r.rank} +${r.excess} #${r.variant} | ${f['method'] || f['ground']} | ${(r.cpuSeconds - startUp).toFixed(2)} | ${Number(f['checkCpuSeconds']).toFixed(2)} | ${f['certificateBytes']} | ${f['certificateGzipBytes']} |`,
+      `| ${r.series} rank ${r.rank} #${r.variant} | ${f['method'] || f['ground']} | ${(r.cpuSeconds - startUp).toFixed(2)} | ${Number(f['checkCpuSeconds']).toFixed(2)} | ${f['certificateBytes']} | ${f['certificateGzipBytes']} |`,
     );
   }
 }
