@@ -113,9 +113,9 @@ describe('bad input is refused with path, expectation and finding', () => {
     ['too many digits', matrix([['9'.repeat(1001)]]), '/source/rows/0/0', /at most 1000 digits, found 1001/],
     [
       'beyond the rank',
-      matrix(Array.from({ length: 2001 }, () => [0])),
+      matrix(Array.from({ length: 2501 }, () => [0])),
       '/source/rows',
-      /at most 2000 rows, found 2001/,
+      /at most 2500 rows, found 2501/,
     ],
     ['no rows', matrix([]), '/source/rows', /at least one row/],
     ['unknown vertex', tree([vertex('a')], [['a', 'b']]), '/source/edges/0/1', /"b"/],

@@ -1,7 +1,7 @@
 /** Bounds that are checked before any work starts. One table: name, bound, meaning. */
 export const LIMITS = {
   /** Rows of a lattice as entered. */
-  rank: 2_000,
+  rank: 2_500,
   /** Largest n of a target; zero columns cost nothing. */
   dimension: 1_000_000,
   /** Decimal digits of one integer. */

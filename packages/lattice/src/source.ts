@@ -56,7 +56,7 @@ export type Source =
   | SumSource;
 
 /** Most rows that a source may build. */
-export const MAX_RANK = 2_000;
+export const MAX_RANK = 2_500;
 
 /** The source has the right shape and no lattice of ours. `path` is a JSON Pointer inside the source. */
 export class SourceFault extends Error {

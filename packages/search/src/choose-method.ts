@@ -33,7 +33,6 @@ const COLUMNS_FROM = 3;
 interface Trial {
   readonly stage: Stage;
   run: Run | null;
-  note: string;
 }
 
 /**
@@ -43,14 +42,11 @@ interface Trial {
 export function chooseMethod(plan: Plan, stage: Stage, seed: number): ChosenStage {
   if (stage.repeats !== undefined) return { stage, ended: null };
   if (plan.forced !== null) return { stage: forcedStage(plan, stage, plan.forced), ended: null };
-  const trials = METHODS.filter((m) => mayTry(m, plan, stage)).map((method): Trial => ({
-    stage: { ...stage, method },
-    run: null,
-    note: '',
-  }));
+  const trials = METHODS.map((method): Trial => ({ stage: { ...stage, method }, run: null }));
   if (rankOf(plan) > 0)
     for (const [round, units] of ROUNDS.entries()) {
       for (const trial of trials) {
+        if (!mayTry(trial.stage.method, plan, stage)) continue;
         const end = advance(plan, trial, units);
         if (end === 'more') continue;
         const { method } = trial.stage;
@@ -90,8 +86,8 @@ function others(trials: readonly Trial[], chosen: Trial): string {
 function byEstimate(plan: Plan, trials: readonly Trial[], seed: number): Stage {
   const open = trials.filter((t) => t.run !== null);
   if (open.length <= 1) {
-    const [only] = open.length === 1 ? open : trials;
-    return { ...only!.stage, why: `${named(only!.stage.method, plan)}: no other method can list this in reach.` };
+    const only = open[0] ?? trials.find((t) => t.stage.method === 'rows')!;
+    return { ...only.stage, why: `${named(only.stage.method, plan)}: no other method can list this in reach.` };
   }
   const measured = open.map((trial) => {
     const guess = estimate(plan, trial.stage, { probes: PROBES, seed, steps: PROBE_STEPS });

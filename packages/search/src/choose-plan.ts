@@ -7,7 +7,8 @@ import { estimate, type Estimate } from './estimate.ts';
 import type { Method } from './method.ts';
 import { candidateOrders } from './order.ts';
 import { toPlanMatrix, type Plan, type PlanTarget } from './plan.ts';
-import { nextStep, type Arithmetic, type ArithmeticGroundLike } from './stages.ts';
+import { openRun } from './run.ts';
+import { nextStep, type Arithmetic, type ArithmeticGroundLike, type Stage } from './stages.ts';
 
 export interface SearchQuestion {
   /** Reduced Gram matrix, r × r, positive definite. */
@@ -24,6 +25,8 @@ export interface SearchQuestion {
 const LLL_RANK = 60;
 /** A basis whose trace is this many times that of the reduced one is not probed. */
 const MUCH_LONGER = 4n;
+/** Units of work (16 listing steps each) within which a search is short. */
+const SHORT_UNITS = 400;
 const PROBES = 24;
 const PROBE_STEPS = 60_000;
 
@@ -54,6 +57,7 @@ export function choosePlan(question: SearchQuestion, arithmetic: Arithmetic<Arit
   if (candidates.length === 1) return { ...only!.plan, why: only!.words };
   const step = nextStep(only!.plan, [], arithmetic);
   if ('conclusion' in step) return { ...only!.plan, why: 'arithmetic settles it before any search' };
+  if (isShort(only!.plan, { ...step.stage, method: 'rows' })) return { ...only!.plan, why: only!.words };
   const measured = candidates.map((c): Candidate => ({
     ...c,
     estimate: estimate(
@@ -69,6 +73,11 @@ export function choosePlan(question: SearchQuestion, arithmetic: Arithmetic<Arit
     ...best.plan,
     why: `${best.words} (${best.estimate.probes} probes put its tree at about ${nodes(best.estimate)} nodes, the next best of ${measured.length} orders at about ${nodes(second.estimate)})`,
   };
+}
+
+/** Does the search end so soon that no other order is worth a probe? */
+function isShort(plan: Plan, stage: Stage): boolean {
+  return openRun(plan, stage, { from: [], to: null }).advance(SHORT_UNITS) !== 'more';
 }
 
 function forms(gram: ReadonlyBigMatrix): { gram: ReadonlyBigMatrix; change: Reduction | null; words: string }[] {
