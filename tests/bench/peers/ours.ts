@@ -91,5 +91,6 @@ interface Tree {
 
 function methodOf(evidence: { list: Tree | null; exclusions: { tree?: Tree }[] }): string {
   const tree = evidence.list ?? evidence.exclusions.at(-1)?.tree ?? null;
-  return tree === null ? '' : `${tree.method}, ${tree.nodes ?? '?'} nodes`;
+  if (tree === null) return '';
+  return `${tree.method}, ${tree.nodes === undefined ? `${tree.vectors} vectors` : `${tree.nodes} nodes`}`;
 }
