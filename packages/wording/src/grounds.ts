@@ -46,16 +46,27 @@ export function exclusionReason(facts: ExclusionFacts): string {
     case 'column':
       return facts.columns === undefined
         ? 'The columns that an embedding could have do not span the space: there are too few of them.'
-        : facts.columns.vectors === '0'
-          ? 'No integer column c has cᵀQ⁻¹c ≤ 1, and every column of an embedding does.'
-          : `Only ${integerInWords(facts.columns.vectors)} integer columns could occur in an embedding (cᵀQ⁻¹c ≤ 1), and they span dimension ${facts.columns.spanned}${rank === null ? '' : ` of ${rank}`}.`;
+        : columnReason(facts.columns, dimension, rank);
     case 'exhaustion':
       return dimension === null
-        ? 'Every branch was searched at a width that is enough for any n; none ends in an embedding.'
-        : 'Every branch was searched; none ends in an embedding.';
+        ? 'Every case was gone through, at a width that is enough for any n; none ends in an embedding.'
+        : 'Every case was gone through; none ends in an embedding.';
     case 'embedding':
       return 'An embedding is listed.';
   }
+}
+
+/** At n = rank every column has norm exactly 1 in the dual, otherwise at most 1. */
+function columnReason(
+  { vectors, spanned }: NonNullable<ExclusionFacts['columns']>,
+  dimension: number | null,
+  rank: number | null,
+): string {
+  const bound = dimension !== null && dimension === rank ? 'cᵀQ⁻¹c = 1' : 'cᵀQ⁻¹c ≤ 1';
+  if (vectors === '0')
+    return `Every column c of an embedding that is not zero has ${bound}, and no integer column does.`;
+  const only = vectors === '1' ? '1 integer column' : `${integerInWords(vectors)} integer columns`;
+  return `Up to sign only ${only} could occur in an embedding (${bound}), and the dimension of their span is ${spanned}, where ${rank ?? 'the rank'} is needed.`;
 }
 
 function primesInWords(primes: readonly string[] | undefined): string {

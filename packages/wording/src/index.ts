@@ -3,6 +3,7 @@ export { invitationLetter, passwordLetter } from './letter-account.ts';
 export * from './consequences.ts';
 export * from './durations.ts';
 export * from './grounds.ts';
+export * from './methods.ts';
 export * from './numbers.ts';
 export * from './places.ts';
 export * from './roles.ts';

@@ -22,6 +22,16 @@ describe('answers of tests', () => {
     ['pair', { undecided: true, reason: 'the list is not complete' }, 'undecided: the list is not complete'],
     ['pair', { passes: true, witness: [0, 1] }, 'passes with embeddings 1 and 2'],
     ['pair', { passes: false }, 'fails'],
+    [
+      'doubleOrbits',
+      { groupOrder: '51840', count: '3', representatives: [0, 2, 5], generators: [] },
+      '3 double orbits; the lattice has 51\u202f840 automorphisms',
+    ],
+    [
+      'doubleOrbits',
+      { groupOrder: '12', count: '1', representatives: [0], generators: [] },
+      '1 double orbit; the lattice has 12 automorphisms',
+    ],
     ['later', { value: 3 }, '{"value":3}'],
   ])('%s %j is “%s”', (name, answer, words) => expect(testAnswerInWords(name, answer as never)).toBe(words));
 

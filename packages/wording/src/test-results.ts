@@ -1,6 +1,6 @@
 /** What the tests on embeddings say, in words. The shapes are those of FORMAT.md, section 8. */
 import type { TestName } from '@palmette/contracts';
-import { countInWords, integerInWords, listInWords } from './numbers.ts';
+import { countInWords, integerInWords, listInWords, plural } from './numbers.ts';
 
 export type TestAnswer = string | { readonly [key: string]: unknown };
 
@@ -36,6 +36,8 @@ export function testAnswerInWords(name: string, answer: TestAnswer): string {
       : '';
     return `not cubiquitous: a coset is missed${missed}`;
   }
+  if (name === 'doubleOrbits' && typeof answer.count === 'string' && typeof answer.groupOrder === 'string')
+    return `${plural(answer.count, 'double orbit')}; the lattice has ${plural(answer.groupOrder, 'automorphism')}`;
   if (typeof answer.passes === 'boolean') {
     const witness = Array.isArray(answer.witness)
       ? ` with embeddings ${listInWords(answer.witness.map((i) => String(Number(i) + 1)))}`

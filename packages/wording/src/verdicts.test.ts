@@ -94,6 +94,18 @@ describe('grounds', () => {
       'Z^4 is excluded by Hilbert symbols at the primes 2 and 17',
     );
   });
+  it('count the columns that could occur', () => {
+    const column = { ...facts, ground: 'column', rank: 6 } as const;
+    expect(exclusionReason({ ...column, columns: { vectors: '0', spanned: 0 } })).toBe(
+      'Every column c of an embedding that is not zero has cᵀQ⁻¹c ≤ 1, and no integer column does.',
+    );
+    expect(exclusionReason({ ...column, dimension: 6, columns: { vectors: '1', spanned: 1 } })).toBe(
+      'Up to sign only 1 integer column could occur in an embedding (cᵀQ⁻¹c = 1), and the dimension of their span is 1, where 6 is needed.',
+    );
+    expect(exclusionReason({ ...column, dimension: null, columns: { vectors: '12', spanned: 5 } })).toContain(
+      '12 integer',
+    );
+  });
   it('name rank and dimension', () => {
     expect(exclusionReason({ ground: 'dimension', dimension: 7, rank: 8 })).toBe(
       '8 independent vectors do not fit into Z^7.',

@@ -16,7 +16,7 @@ export interface VerdictFacts {
   readonly complete: boolean;
   /** From the certificate, where it is at hand: determinant of the reduced lattice, and the exclusion it carries. */
   readonly determinant?: string | undefined;
-  readonly exclusion?: Pick<ExclusionFacts, 'ground' | 'dimension' | 'primes'> | undefined;
+  readonly exclusion?: Pick<ExclusionFacts, 'ground' | 'dimension' | 'primes' | 'columns'> | undefined;
 }
 
 /** “Embeds in Z^9, in exactly one way up to symmetry”. */

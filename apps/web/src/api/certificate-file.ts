@@ -21,8 +21,13 @@ export interface FileEmbedding {
 }
 
 export interface FileTree {
-  readonly dimension: number;
-  readonly nodes: string;
+  readonly method: string;
+  /** Null: columns that answer for any n. */
+  readonly dimension: number | null;
+  /** Of a tree of rows. */
+  readonly nodes?: string;
+  /** Of frames and columns: admissible columns up to sign. */
+  readonly vectors?: string;
   readonly orbits: string;
 }
 
@@ -30,6 +35,9 @@ export interface FileExclusion {
   readonly dimension: number | null;
   readonly ground: Ground;
   readonly primes?: readonly string[];
+  /** Of the ground `column`. */
+  readonly vectors?: string;
+  readonly spanned?: number;
   readonly tree?: FileTree;
 }
 
@@ -54,7 +62,12 @@ export interface FileHead {
     readonly total?: string;
   };
   readonly tests: Readonly<Record<string, TestAnswer>>;
-  readonly evidence: { readonly exclusions: readonly FileExclusion[]; readonly list: FileTree | null };
+  readonly evidence: {
+    readonly exclusions: readonly FileExclusion[];
+    readonly list: FileTree | null;
+    /** Present if a second opinion was asked for; null where none is possible or needed. */
+    readonly second?: FileTree | null;
+  };
   readonly end: { readonly records: number; readonly sha256: string };
 }
 
