@@ -21,7 +21,7 @@ export function assemble(job: AssembleJob, ask: Ask): AssembleEnd {
   const keep = (chunk: Uint8Array) => void ask({ kind: 'keep', chunk });
   const { facts, head, last } = certifyInChunks(understood, plan, step.conclusion, results, found, keep);
   const nodes = results.reduce((sum, r) => sum + BigInt(r.nodes), 0n);
-  if (last !== null || nodes > BigInt(job.wholeCheckNodes))
+  if (last !== null || weightOf(results) > BigInt(job.wholeCheckNodes))
     return { kind: 'to check', facts, head, last, cpuMs: meter.ms };
   return {
     kind: 'settled',
@@ -33,6 +33,14 @@ export function assemble(job: AssembleJob, ask: Ask): AssembleEnd {
     nodes,
     cpuMs: meter.ms,
   };
+}
+
+/** A node of frames or columns looks at a whole list of candidates: its check costs as much as that of so many nodes of rows. */
+const VECTOR_NODE = 200n;
+
+/** Nodes of all stages, weighed by what their check costs. */
+function weightOf(results: readonly StageResult[]): bigint {
+  return results.reduce((sum, r) => sum + BigInt(r.nodes) * (r.method === 'rows' ? 1n : VECTOR_NODE), 0n);
 }
 
 /** The last stage's result with the set of its orbits, for the second opinion to compare. */

@@ -23,8 +23,8 @@ import { fixedDimension, understand, type Understood } from './understand.ts';
 
 /** Work between two looks at the clock. */
 const SLICE_NODES = 2_000;
-/** Nodes above which a search becomes parcels even if it was quick: its check is to run in parcels too. */
-const QUICK_NODES = 20_000n;
+/** Listing steps above which a search becomes parcels even if it was quick: its check is to run in parcels too. */
+const QUICK_STEPS = 2_000_000;
 /** Pieces of a first cover: enough that a few long ones can be cut again, few enough to draw. */
 const COVER_PARCELS = 48;
 const ESTIMATE_PROBES = 200;
@@ -156,7 +156,7 @@ function runQuickly(
     const run = ended?.run ?? openRun(plan!, stage, { from: [], to: null });
     let end = ended?.end ?? run.advance(SLICE_NODES);
     while (end === 'more') {
-      if (meter.ms > quickCpuMs || run.nodes > QUICK_NODES) return { kind: 'long', stage, results };
+      if (meter.ms > quickCpuMs || run.steps > QUICK_STEPS) return { kind: 'long', stage, results };
       end = run.advance(SLICE_NODES);
     }
     const orbits = run.takeFound();
