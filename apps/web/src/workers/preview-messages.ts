@@ -1,6 +1,6 @@
 /** What the page and the preview's worker say to each other. Big integers travel as decimal strings. */
 import type { Scope, Source, Target } from '@palmette/contracts';
-import type { ArithmeticGround } from '@palmette/lattice';
+import type { ArithmeticGround, ColumnGround } from '@palmette/lattice';
 import type { GraphEdge } from '@palmette/drawing';
 
 export interface PreviewOrder {
@@ -44,14 +44,17 @@ export interface SourceReading {
 }
 
 export interface DimensionGround {
-  readonly dimension: number;
-  readonly ground: ArithmeticGround;
+  /** Null: every Z^n. */
+  readonly dimension: number | null;
+  readonly ground: ArithmeticGround | ColumnGround;
 }
 
 /** What arithmetic says before any search. */
 export interface ArithmeticReading {
   /** Every dimension that arithmetic excludes on the way to the target. */
   readonly excluded: readonly DimensionGround[];
+  /** Why no Z^n at all holds the lattice, whatever the target is. */
+  readonly nowhere: ColumnGround | null;
   /** The target itself is settled by it. */
   readonly settled: boolean;
   /** Where a search would begin; null if settled or for any n. */

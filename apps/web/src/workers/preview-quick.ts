@@ -3,7 +3,7 @@
  * first. What it says is not certified and nothing of it is kept.
  */
 import type { Target } from '@palmette/contracts';
-import { arithmeticGround, reducedBasis, type ArithmeticGround, type Lattice } from '@palmette/lattice';
+import { reducedBasis, type ColumnGround, type Lattice } from '@palmette/lattice';
 import {
   choosePlan,
   embeddingMatrix,
@@ -13,6 +13,7 @@ import {
   type Plan,
   type StageResult,
 } from '@palmette/search';
+import { groundsOf } from './preview-grounds.ts';
 import type { ArithmeticReading, DimensionGround, PreviewOrder, QuickLook } from './preview-messages.ts';
 
 const LISTING_MS = 200;
@@ -29,35 +30,39 @@ const SEED = 1;
 /** Above the rank by more than this, arithmetic has no condition (FORMAT.md, section 7). */
 const LAST_EXCESS = 2;
 
-export function arithmeticReading(lattice: Lattice, target: Target): ArithmeticReading {
-  const ground = (n: number) => arithmeticGround(lattice, n);
-  if ('any' in target) return { excluded: [], settled: false, next: null };
-  if (!('least' in target)) {
+export function arithmeticReading(lattice: Lattice, target: Target, ground = groundsOf(lattice)): ArithmeticReading {
+  const nowhere = ground(null) as ColumnGround | null;
+  const settled = (excluded: DimensionGround[]) => ({ excluded, nowhere, settled: true, next: null });
+  const open = (excluded: DimensionGround[], next: number | null) => ({ excluded, nowhere, settled: false, next });
+  if (!('least' in target) && !('any' in target)) {
     const n = 'dimension' in target ? target.dimension : lattice.rank + target.excess;
     const found = ground(n);
-    return found === null
-      ? { excluded: [], settled: false, next: n }
-      : { excluded: [{ dimension: n, ground: found }], settled: true, next: null };
+    return found === null ? open([], n) : settled([{ dimension: n, ground: found }]);
   }
+  if (nowhere !== null) return settled([{ dimension: null, ground: nowhere }]);
+  if ('any' in target) return open([], null);
   const upTo = target.least.upTo ?? Infinity;
+  if (upTo < lattice.rank) return settled([{ dimension: upTo, ground: { ground: 'dimension' } }]);
   const excluded: DimensionGround[] = [];
-  if (upTo < lattice.rank)
-    return { excluded: [{ dimension: upTo, ground: { ground: 'dimension' } }], settled: true, next: null };
   for (let n = lattice.rank; n <= Math.min(upTo, lattice.rank + LAST_EXCESS); n += 1) {
     const found = ground(n);
-    if (found === null) return { excluded, settled: false, next: n };
+    if (found === null) return open(excluded, n);
     excluded.push({ dimension: n, ground: found });
   }
   const next = lattice.rank + LAST_EXCESS + 1;
-  return next <= upTo ? { excluded, settled: false, next } : { excluded, settled: true, next: null };
+  return next <= upTo ? open(excluded, next) : settled(excluded);
 }
 
 /** @param now milliseconds, for the bound of the listing */
-export function quickLook(lattice: Lattice, order: PreviewOrder, now: () => number): QuickLook {
+export function quickLook(
+  lattice: Lattice,
+  order: PreviewOrder,
+  now: () => number,
+  arithmetic = groundsOf(lattice),
+): QuickLook {
   if (lattice.rank > QUICK_RANK)
     return { kind: 'none', why: `Rank ${lattice.rank} is too much for a quick look in the browser.` };
   const reduced = reducedBasis(lattice);
-  const arithmetic = (n: number): ArithmeticGround | null => arithmeticGround(lattice, n);
   const plan = choosePlan({ gram: reduced.gram, target: order.target, scope: order.scope, seed: SEED }, arithmetic);
   const results: StageResult[] = [];
   const began = now();

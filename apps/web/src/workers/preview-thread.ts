@@ -3,6 +3,7 @@
  * order at a time; the page ends the worker when it has a newer one.
  */
 import { buildLattice, discriminantGroup, SourceFault } from '@palmette/lattice';
+import { groundsOf } from './preview-grounds.ts';
 import type { PreviewOrder, PreviewReport } from './preview-messages.ts';
 import { arithmeticReading, quickLook } from './preview-quick.ts';
 import { readingOf } from './preview-reading.ts';
@@ -13,10 +14,11 @@ onmessage = ({ data }: MessageEvent<PreviewOrder>) => {
   try {
     const lattice = buildLattice(data.source);
     say({ kind: 'read', reading: readingOf(data.source, lattice) });
-    const arithmetic = arithmeticReading(lattice, data.target);
+    const grounds = groundsOf(lattice);
+    const arithmetic = arithmeticReading(lattice, data.target, grounds);
     say({ kind: 'arithmetic', arithmetic });
     say({ kind: 'group', divisors: discriminantGroup(lattice).map(String) });
-    if (!arithmetic.settled) say({ kind: 'quick', quick: quickLook(lattice, data, () => performance.now()) });
+    if (!arithmetic.settled) say({ kind: 'quick', quick: quickLook(lattice, data, () => performance.now(), grounds) });
   } catch (error) {
     say({
       kind: 'fault',

@@ -43,6 +43,7 @@ describe('arithmetic', () => {
   it('settles 17/5 at its rank, and leaves Z^5 to a search', () => {
     expect(arithmetic('17/5', { excess: 0 })).toEqual({
       excluded: [{ dimension: 3, ground: { ground: 'determinant' } }],
+      nowhere: null,
       settled: true,
       next: null,
     });
@@ -55,6 +56,36 @@ describe('arithmetic', () => {
       { dimension: 2, ground: { ground: 'dimension' } },
     ]);
     expect(arithmetic('17/5', { any: true })).toMatchObject({ settled: false, next: null });
+  });
+});
+
+describe('columns that do not span', () => {
+  // Conway and Sloane, SPLAG, ch. 4: the dual of E6 has minimal norm 4/3, that of E7 3/2, E8 is its own with norm 2
+  it.each(['E6', 'E7', 'E8'])('exclude %s from every Z^n before any search', (name) => {
+    const lattice = buildLattice(source(name));
+    const nowhere = { ground: 'column', vectors: '0', spanned: 0 };
+    for (const target of [{ any: true } as const, { least: {} }, { least: { upTo: 20 } }])
+      expect(arithmeticReading(lattice, target)).toEqual({
+        excluded: [{ dimension: null, ground: nowhere }],
+        nowhere,
+        settled: true,
+        next: null,
+      });
+    for (const excess of [0, 1, 2, 9])
+      expect(arithmeticReading(lattice, { excess })).toMatchObject({ nowhere, settled: true });
+  });
+
+  it('exclude a sum with such a summand, counted by its columns', () => {
+    // E6 + <1>: only the column of the unit vector, which spans dimension 1 of 7
+    const e6 = buildLattice(source('E6')).gram.map((row) => row.map(Number));
+    const rows = [...e6.map((row) => [...row, 0]), [0, 0, 0, 0, 0, 0, 1]];
+    const { nowhere } = arithmeticReading(buildLattice({ kind: 'matrix', rows }), { any: true });
+    expect(nowhere).toEqual({ ground: 'column', vectors: '1', spanned: 1 });
+  });
+
+  it('say nothing about a lattice that embeds', () => {
+    for (const name of ['D4', 'A5', '17/5'])
+      expect(arithmeticReading(buildLattice(source(name)), { any: true }).nowhere).toBeNull();
   });
 });
 

@@ -31,11 +31,26 @@ describe('the target as typed', () => {
 describe('words', () => {
   it('of an arithmetic verdict name target and reason', () => {
     const said = settledInWords(
-      { excluded: [{ dimension: 3, ground: { ground: 'determinant' } }], settled: true, next: null },
+      { excluded: [{ dimension: 3, ground: { ground: 'determinant' } }], nowhere: null, settled: true, next: null },
       reading,
     );
     expect(said.heading).toBe('Excluded: it does not embed in Z^3.');
     expect(said.lead).toContain('17 is not one');
+  });
+
+  it('of columns that do not span exclude every Z^n, whatever was asked', () => {
+    const nowhere = { ground: 'column', vectors: '0', spanned: 0 } as const;
+    const at = settledInWords(
+      { excluded: [{ dimension: 6, ground: { ground: 'determinant' } }], nowhere, settled: true, next: null },
+      { rank: 6, determinant: '3' } as SourceReading,
+    );
+    expect(at.heading).toBe('Excluded: it embeds in no Z^n, Z^6 included.');
+    expect(at.lead).toMatch(/cᵀQ⁻¹c ≤ 1, and no integer column does\. .*3 is not one/);
+    const any = settledInWords(
+      { excluded: [{ dimension: null, ground: nowhere }], nowhere, settled: true, next: null },
+      reading,
+    );
+    expect(any.heading).toBe('Excluded: it embeds in no Z^n.');
   });
 
   it('of what is excluded on the way to the least name the primes', () => {
@@ -45,6 +60,7 @@ describe('words', () => {
           { dimension: 3, ground: { ground: 'determinant' } },
           { dimension: 4, ground: { ground: 'hilbert', primes: ['2', '17'] } },
         ],
+        nowhere: null,
         settled: false,
         next: 5,
       },

@@ -18,6 +18,7 @@ function factsOf({ dimension, ground }: DimensionGround, reading: SourceReading)
     rank: reading.rank,
     determinant: reading.determinant,
     primes: ground.ground === 'hilbert' ? ground.primes : undefined,
+    columns: ground.ground === 'column' ? ground : undefined,
   };
 }
 
@@ -29,10 +30,19 @@ export interface Said {
 /** The verdict that arithmetic gives by itself. */
 export function settledInWords(arithmetic: ArithmeticReading, reading: SourceReading): Said {
   const last = arithmetic.excluded.at(-1)!;
+  const { nowhere } = arithmetic;
   const clauses = arithmetic.excluded.slice(0, -1).map((one) => capital(`${exclusionClause(factsOf(one, reading))}.`));
+  const reason = exclusionReason(factsOf(last, reading));
+  if (nowhere !== null) {
+    const everywhere = exclusionReason(factsOf({ dimension: null, ground: nowhere }, reading));
+    return {
+      heading: `Excluded: it embeds in no Z^n${last.dimension === null ? '' : `, ${space(last.dimension)} included`}.`,
+      lead: last.ground.ground === 'column' ? everywhere : `${everywhere} ${reason}`,
+    };
+  }
   return {
-    heading: `Excluded: it does not embed in ${space(last.dimension)}.`,
-    lead: [exclusionReason(factsOf(last, reading)), ...clauses].join(' '),
+    heading: `Excluded: it does not embed in ${space(last.dimension!)}.`,
+    lead: [reason, ...clauses].join(' '),
   };
 }
 
