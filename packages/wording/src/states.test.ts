@@ -1,6 +1,6 @@
 import { SEARCH_STATES } from '@palmette/contracts';
 import { describe, expect, it } from 'vitest';
-import { markOf, stateHeading, stateLead, verdictInTable, type StateFacts } from './states.ts';
+import { markOf, refusalIn, stateHeading, stateLead, verdictInTable, type StateFacts } from './states.ts';
 
 const searching: StateFacts = {
   state: 'searching',
@@ -64,6 +64,33 @@ describe('a search that is not settled', () => {
     const broken: StateFacts = { ...searching, state: 'broken', reason: 'two methods disagree' };
     expect(stateHeading(broken)).toBe('Broken');
     expect(stateLead(broken)).toContain('Two methods disagree. This is a fault and no answer');
+  });
+
+  it('names both results where two methods disagree', () => {
+    const reason = 'two methods disagree at n = 7: rows list 3 orbits (set 0a), frames list 2 orbits (set 0b)';
+    const broken: StateFacts = { ...searching, state: 'broken', reason };
+    expect(stateHeading(broken)).toBe('Broken: two methods disagree');
+    expect(stateLead(broken)).toBe(
+      'At n = 7: rows list 3 orbits (set 0a), frames list 2 orbits (set 0b). One of them is wrong, which is a fault of Palmette and no answer. Both results are kept. No verdict is shown until this is explained.',
+    );
+  });
+
+  it('says what to mend in a question that is refused when it begins', () => {
+    const reason =
+      'refused: /method this method cannot answer the question: frames need n = rank. Ask again with this mended';
+    expect(refusalIn(reason)).toEqual({
+      path: '/method',
+      message: 'this method cannot answer the question: frames need n = rank',
+    });
+    const broken: StateFacts = { ...searching, state: 'broken', reason };
+    expect(stateHeading(broken)).toMatch(/^Refused/);
+    expect(stateLead(broken)).toContain('frames need n = rank (/method of the question). Nothing was searched');
+    expect(refusalIn('refused: the matrix is not symmetric')).toEqual({
+      path: '',
+      message: 'the matrix is not symmetric',
+    });
+    expect(refusalIn(null)).toBeNull();
+    expect(refusalIn('two methods disagree')).toBeNull();
   });
 
   it('never reads as a no in any state', () => {

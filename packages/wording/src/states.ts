@@ -43,10 +43,45 @@ export function stateHeading(facts: StateFacts): string {
     case 'withdrawn':
       return 'Open: withdrawn';
     case 'broken':
-      return 'Broken';
+      if (refusalIn(facts.reason) !== null) return 'Refused: it cannot be answered as it was asked';
+      return disagreementIn(facts.reason) === null ? 'Broken' : 'Broken: two methods disagree';
     case 'settled':
       return 'Settled';
   }
+}
+
+/** What a station found wrong with a question when it began: a place in the document, and the sentence. */
+export function refusalIn(reason: string | null): { readonly path: string; readonly message: string } | null {
+  const found = /^refused: (?:(\/\S*) )?(.*?)(?:\. Ask again with this mended)?\.?$/s.exec(reason ?? '');
+  return found === null ? null : { path: found[1] ?? '', message: found[2]! };
+}
+
+/** Where two methods disagree and what each of them lists; null if that is not the reason. */
+function disagreementIn(reason: string | null): string | null {
+  const found = /two methods disagree(?: at n = (\d+))?: (.+)$/s.exec(reason ?? '');
+  if (found === null) return null;
+  return `${found[1] === undefined ? '' : `at n = ${found[1]}: `}${found[2]}`;
+}
+
+/** Null: the reason speaks for itself. */
+function brokenLead(reason: string | null): string | null {
+  const refusal = refusalIn(reason);
+  if (refusal !== null) {
+    const where = refusal.path === '' ? '' : ` (${refusal.path} of the question)`;
+    return together(
+      asSentence(`${refusal.message}${where}`),
+      'Nothing was searched and nothing can be concluded.',
+      'Restate it with this mended.',
+    );
+  }
+  const disagreement = disagreementIn(reason);
+  return disagreement === null
+    ? null
+    : together(
+        asSentence(disagreement),
+        'One of them is wrong, which is a fault of Palmette and no answer.',
+        'Both results are kept. No verdict is shown until this is explained.',
+      );
 }
 
 function begun(facts: StateFacts): boolean {
@@ -85,10 +120,13 @@ export function stateLead(facts: StateFacts): string {
     case 'withdrawn':
       return together('It was withdrawn before it was settled.', progress, nothing, 'What was found is kept.');
     case 'broken':
-      return together(
-        asSentence(facts.reason ?? 'no reason was recorded'),
-        'This is a fault and no answer: no verdict is shown until it is explained.',
-        'What was found is kept.',
+      return (
+        brokenLead(facts.reason) ??
+        together(
+          asSentence(facts.reason ?? 'no reason was recorded'),
+          'This is a fault and no answer: no verdict is shown until it is explained.',
+          'What was found is kept.',
+        )
       );
     case 'settled':
       return '';

@@ -6,6 +6,7 @@ import { computed, reactive, ref, watch, type ComputedRef, type Ref } from 'vue'
 import {
   QUESTION_FORMAT,
   validateQuestion,
+  type MethodName,
   type Question,
   type Scope,
   type Source,
@@ -22,7 +23,15 @@ const KEPT_UNDER = 'palmette.new-question';
 export interface QuestionDraft {
   readonly source: SourceDraft;
   readonly target: TargetDraft;
-  readonly rest: { scope: Scope; tests: TestName[]; budget: string; title: string };
+  readonly rest: {
+    scope: Scope;
+    tests: TestName[];
+    budget: string;
+    title: string;
+    /** Empty: the engine chooses. */
+    method: MethodName | '';
+    secondOpinion: boolean;
+  };
   readonly empty: ComputedRef<boolean>;
   /** Null where nothing is typed, or where it is refused. */
   readonly readSource: ComputedRef<Source | null>;
@@ -41,10 +50,19 @@ export interface QuestionDraft {
   startAfresh(): void;
 }
 
+const emptyRest = (): QuestionDraft['rest'] => ({
+  scope: 'all',
+  tests: [],
+  budget: '8 h',
+  title: '',
+  method: '',
+  secondOpinion: false,
+});
+
 export function useQuestionDraft(): QuestionDraft {
   const source = reactive(emptyDraft()) as SourceDraft;
   const target = reactive(rankTarget());
-  const rest = reactive<QuestionDraft['rest']>({ scope: 'all', tests: [], budget: '8 h', title: '' });
+  const rest = reactive(emptyRest());
   const filled = ref(0);
   restore();
 
@@ -107,7 +125,9 @@ export function useQuestionDraft(): QuestionDraft {
       rest.scope = question.scope;
       rest.tests = [...question.tests];
       rest.title = question.title ?? '';
-      if (question.budget !== undefined) rest.budget = `${question.budget.cpuSeconds} s`;
+      rest.method = question.method ?? '';
+      rest.secondOpinion = question.secondOpinion === true;
+      if (question.budget !== undefined) rest.budget = spanAsTyped(question.budget.cpuSeconds);
       filled.value += 1;
     },
     document() {
@@ -120,6 +140,8 @@ export function useQuestionDraft(): QuestionDraft {
         target: 'target' in targetReading.value ? targetReading.value.target : null,
         scope: rest.scope,
         tests: rest.tests,
+        ...(rest.method === '' ? {} : { method: rest.method }),
+        ...(rest.secondOpinion ? { secondOpinion: true } : {}),
         ...(seconds === undefined || seconds === null ? {} : { budget: { cpuSeconds: seconds } }),
       });
     },
@@ -129,10 +151,16 @@ export function useQuestionDraft(): QuestionDraft {
     startAfresh() {
       Object.assign(source, emptyDraft());
       Object.assign(target, rankTarget());
-      Object.assign(rest, { scope: 'all', tests: [], budget: '8 h', title: '' });
+      Object.assign(rest, emptyRest());
       filled.value += 1;
       // after the watcher has kept the empty draft
       queueMicrotask(() => sessionStorage.removeItem(KEPT_UNDER));
     },
   };
+}
+
+/** “8 h” for whole hours, “90 min” for whole minutes, else seconds: what `readSpan` reads. */
+function spanAsTyped(seconds: number): string {
+  if (seconds % 3600 === 0) return `${seconds / 3600} h`;
+  return seconds % 60 === 0 ? `${seconds / 60} min` : `${seconds} s`;
 }
