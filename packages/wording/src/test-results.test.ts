@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { testAnswerInWords, testInWords } from './test-results.ts';
+import { testAnswerInWords, testFolded, testInWords } from './test-results.ts';
 
 describe('answers of tests', () => {
   it.each([
@@ -34,6 +34,24 @@ describe('answers of tests', () => {
     ],
     ['later', { value: 3 }, '{"value":3}'],
   ])('%s %j is “%s”', (name, answer, words) => expect(testAnswerInWords(name, answer as never)).toBe(words));
+
+  it('fold the generators of the automorphisms away', () => {
+    const generator = [
+      ['0', '-1'],
+      ['1', '10'],
+    ];
+    const answer = { groupOrder: '12', count: '2', representatives: [0, 3], generators: [generator] };
+    expect(testFolded('doubleOrbits', answer)).toEqual({
+      title: '1 generator',
+      note: 'One of each: embeddings 1 and 4.',
+      matrices: [' 0 −1\n 1 10'],
+      left: 0,
+    });
+    const many = { ...answer, generators: new Array(30).fill(generator) };
+    expect(testFolded('doubleOrbits', many)).toMatchObject({ title: '30 generators', left: 18 });
+    expect(testFolded('doubleOrbits', { undecided: true, reason: 'the list is not complete' })).toBeNull();
+    expect(testFolded('pair', { passes: false })).toBeNull();
+  });
 
   it('have names, and an unknown one keeps its own', () => {
     expect(testInWords('halfChangemaker')).toBe('half-integer changemaker');

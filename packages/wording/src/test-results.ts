@@ -54,3 +54,40 @@ function gramInWords(rows: readonly (readonly unknown[])[]): string {
   if (rows.length === 1) return `<${entry(rows[0]![0])}>`;
   return `[${rows.map((row) => `[${row.map(entry).join(', ')}]`).join(', ')}]`;
 }
+
+export interface FoldedAnswer {
+  readonly title: string;
+  readonly note: string;
+  /** Rows on lines of their own, entries apart by spaces of even width. */
+  readonly matrices: readonly string[];
+  /** Matrices that are not shown. */
+  readonly left: number;
+}
+
+/** Matrices of an answer that are set out on a screen, and entries that each may have. */
+const SHOWN_MATRICES = 12;
+const SHOWN_ENTRIES = 2_500;
+
+/** What stands behind an answer and is shown only on wish: the generators of the automorphisms. */
+export function testFolded(name: string, answer: TestAnswer): FoldedAnswer | null {
+  if (name !== 'doubleOrbits' || typeof answer === 'string' || !Array.isArray(answer.generators)) return null;
+  const generators = answer.generators as readonly (readonly (readonly unknown[])[])[];
+  const shown = generators.slice(0, SHOWN_MATRICES).filter((rows) => rows.length ** 2 <= SHOWN_ENTRIES);
+  const places = Array.isArray(answer.representatives) ? answer.representatives.map((i) => String(Number(i) + 1)) : [];
+  const some = places.slice(0, 20);
+  return {
+    title: plural(generators.length, 'generator'),
+    note:
+      places.length === 0
+        ? ''
+        : `One of each: ${places.length === 1 ? 'embedding' : 'embeddings'} ${places.length > some.length ? `${some.join(', ')} …` : listInWords(some)}.`,
+    matrices: shown.map(matrixText),
+    left: generators.length - shown.length,
+  };
+}
+
+function matrixText(rows: readonly (readonly unknown[])[]): string {
+  const text = rows.map((row) => row.map((x) => String(x).replace('-', '−')));
+  const width = Math.max(...text.flat().map((x) => x.length));
+  return text.map((row) => row.map((x) => x.padStart(width)).join(' ')).join('\n');
+}

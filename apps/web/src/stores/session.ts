@@ -6,6 +6,7 @@ import { whenSignedOut } from '../api/client.ts';
 import { ApiError, UnreachableError } from '../api/errors.ts';
 import * as api from '../api/session.ts';
 import { useAppearance } from './appearance.ts';
+import { keepSignedInHint, mayBeSignedIn } from './signed-in-hint.ts';
 
 export const useSession = defineStore('session', () => {
   const person = ref<Person | null>(null);
@@ -23,14 +24,20 @@ export const useSession = defineStore('session', () => {
   whenSignedOut(() => {
     if (person.value !== null) ended.value = true;
     person.value = null;
+    keepSignedInHint(false);
   });
 
-  /** Asks the server once who this is. */
+  /** Asks the server once who this is, unless nobody was ever signed in here. */
   async function load(): Promise<void> {
     away.value = false;
+    if (!mayBeSignedIn()) {
+      known.value = true;
+      return;
+    }
     try {
       person.value = (await api.whoAmI()).person;
       known.value = true;
+      keepSignedInHint(true);
     } catch (error) {
       person.value = null;
       known.value = error instanceof ApiError && error.code === 'signed-out';
@@ -42,6 +49,7 @@ export const useSession = defineStore('session', () => {
     person.value = (await api.signIn(email, password)).person;
     known.value = true;
     ended.value = false;
+    keepSignedInHint(true);
     await adoptAppearance();
   }
 
@@ -58,6 +66,7 @@ export const useSession = defineStore('session', () => {
   async function signOut(): Promise<void> {
     await api.signOut();
     person.value = null;
+    keepSignedInHint(false);
   }
 
   function rename(name: string): void {
