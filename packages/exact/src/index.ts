@@ -21,6 +21,8 @@ export {
   roundDivide,
 } from './integers.ts';
 export { trialFactor, type PartialFactorisation } from './factor.ts';
+export { primeFactors, PROVABLE_PRIME } from './full-factor.ts';
+export { unitRoots } from './root-modulo.ts';
 export { hilbertSymbol, isLocalSquare, legendre } from './hilbert.ts';
 export { determinant } from './determinant.ts';
 export { eliminateSymmetric, rationalKernel, type Elimination } from './ldl.ts';
