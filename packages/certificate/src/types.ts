@@ -73,7 +73,20 @@ export interface VectorsTree {
   readonly orbits: string;
 }
 
-export type Tree = RowsTree | VectorsTree;
+/** The tree of frames, revision 2: gluing. FORMAT.md, section 7. */
+export interface GluedTree {
+  readonly method: 'frames';
+  readonly revision: 2;
+  readonly dimension: number;
+  readonly basis: TreeBasis;
+  /** Primes of the determinant, ascending. */
+  readonly primes: readonly string[];
+  /** Unimodular lattices that were looked at. */
+  readonly glued: string;
+  readonly orbits: string;
+}
+
+export type Tree = RowsTree | VectorsTree | GluedTree;
 
 export type Exclusion =
   | { readonly dimension: number; readonly ground: 'dimension' }

@@ -88,7 +88,7 @@ function countTrees(trees: readonly CheckTree[], options: CheckOptions): TreeCou
 function compareTree(tree: CheckTree, nodes: bigint, orbits: bigint): void {
   if (orbits !== tree.orbits)
     throw new Rejection(`${tree.place}/orbits`, `${orbits} were enumerated, ${tree.orbits} are claimed`);
-  const counted = tree.method === 'rows' ? 'nodes' : 'vectors';
+  const counted = tree.method === 'rows' ? 'nodes' : tree.primes === undefined ? 'vectors' : 'glued';
   if (nodes !== tree.nodes)
     throw new Rejection(`${tree.place}/${counted}`, `${nodes} were enumerated, ${tree.nodes} are claimed`);
 }

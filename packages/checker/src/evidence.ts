@@ -3,6 +3,7 @@ import { times, turned, type Matrix } from './arithmetic.ts';
 import { checkDeterminantGround, checkDimensionGround, checkHilbertGround } from './grounds.ts';
 import { readStringMatrix, type CheckedLattice } from './lattice.ts';
 import { dualForm } from './dual-form.ts';
+import { isPrime, PRIME_BOUND } from './unit-roots.ts';
 import { listColumns, spanOf } from './dual-columns.ts';
 import {
   countOf,
@@ -125,9 +126,10 @@ function readTree(lattice: CheckedLattice, value: Json | undefined, place: strin
   if (typeof name === 'string' && !(METHODS as readonly string[]).includes(name))
     throw new NotChecked(`the method ${JSON.stringify(name)} is not known here`);
   const method = oneOf(name, `${place}/method`, METHODS);
-  const counted = method === 'rows' ? ['order', 'nodes'] : ['vectors'];
+  const glued = method === 'frames' && (value as { revision?: Json }).revision === 2;
+  const counted = method === 'rows' ? ['order', 'nodes'] : glued ? ['primes', 'glued'] : ['vectors'];
   const o = objectOf(value, place, ['method', 'revision', 'dimension', 'basis', ...counted, 'orbits']);
-  if (countOf(o['revision'], `${place}/revision`) !== 1)
+  if (countOf(o['revision'], `${place}/revision`) !== (glued ? 2 : 1))
     throw new NotChecked(`revision ${String(o['revision'])} of the method ${method} is not known here`);
   const dimension =
     method === 'columns' && o['dimension'] === null ? null : countOf(o['dimension'], `${place}/dimension`);
@@ -139,16 +141,35 @@ function readTree(lattice: CheckedLattice, value: Json | undefined, place: strin
     return { place, method, dimension, gram: order.map((v) => order.map((w) => working[v]![w]!)), nodes, orbits };
   }
   const excess = dimension === null ? null : dimension - lattice.rank;
-  if (method === 'frames' && (excess === null || excess < 0 || excess > 2))
-    throw new Rejection(`${place}/dimension`, 'frames are for n = rank, rank + 1, rank + 2');
+  if (method === 'frames' && (excess === null || excess < 0 || excess > (glued ? 1 : 2)))
+    throw new Rejection(
+      `${place}/dimension`,
+      'frames are for n = rank, rank + 1, rank + 2; by gluing for the first two',
+    );
   return {
     place,
     method,
     dimension,
     gram: working,
-    nodes: stringIntegerOf(o['vectors'], `${place}/vectors`),
+    ...(glued ? { primes: readPrimes(lattice.determinant, o['primes'], `${place}/primes`) } : {}),
+    nodes: glued ? stringIntegerOf(o['glued'], `${place}/glued`) : stringIntegerOf(o['vectors'], `${place}/vectors`),
     orbits,
   };
+}
+
+/** All primes of d, ascending, each proved prime. */
+function readPrimes(d: bigint, value: Json | undefined, place: string): bigint[] {
+  const primes = listOf(value, place).map((p, i) => stringIntegerOf(p, `${place}/${i}`));
+  let rest = d;
+  primes.forEach((p, i) => {
+    if (i > 0 && p <= primes[i - 1]!) throw new Rejection(`${place}/${i}`, 'not ascending');
+    if (p >= PRIME_BOUND || !isPrime(p))
+      throw new Rejection(`${place}/${i}`, `${p} is not a prime below ${PRIME_BOUND}`);
+    if (rest % p !== 0n) throw new Rejection(`${place}/${i}`, `${p} does not divide the determinant`);
+    while (rest % p === 0n) rest /= p;
+  });
+  if (rest !== 1n) throw new Rejection(place, `the primes leave ${rest} of the determinant`);
+  return primes;
 }
 
 function readOrder(rank: number, value: Json | undefined, place: string): number[] {

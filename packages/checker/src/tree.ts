@@ -1,6 +1,7 @@
 /** Trees as the checker enumerates them: what is asked, and runs over intervals. FORMAT.md, section 7. */
 import type { Matrix } from './arithmetic.ts';
 import { Enumeration } from './enumeration.ts';
+import { GlueRun, splitGlued } from './glue-run.ts';
 import { splitVectors, VectorRun } from './vector-run.ts';
 
 /** What has to be enumerated, and what the certificate says about it. */
@@ -12,7 +13,9 @@ export interface CheckTree {
   readonly dimension: number | null;
   /** The working Gram; of a tree of rows in their order. */
   readonly gram: Matrix;
-  /** Nodes of a tree of rows, admissible columns of the others. */
+  /** Present for frames by gluing: the primes of the determinant. */
+  readonly primes?: readonly bigint[];
+  /** Nodes of a tree of rows, admissible columns of the others, lattices of frames by gluing. */
   readonly nodes: bigint;
   readonly orbits: bigint;
 }
@@ -45,7 +48,10 @@ export interface CheckRun {
 }
 
 export function openCheckRun(tree: CheckTree, interval: CheckInterval, checkpoint?: string): CheckRun {
-  return isRows(tree) ? new Enumeration(tree, interval, checkpoint) : new VectorRun(tree, interval, checkpoint);
+  if (isRows(tree)) return new Enumeration(tree, interval, checkpoint);
+  return tree.primes === undefined
+    ? new VectorRun(tree, interval, checkpoint)
+    : new GlueRun(tree, interval, checkpoint);
 }
 
 /** Cut at a depth with this many nodes for each piece, so that pieces even out. */
@@ -54,7 +60,7 @@ const MOST_NODES_PER_PIECE = 256;
 
 /** At most `pieces` intervals that abut from the root to the end: cut at the nodes of one depth. */
 export function splitCheck(tree: CheckTree, pieces: number): CheckInterval[] {
-  if (!isRows(tree)) return splitVectors(tree, pieces);
+  if (!isRows(tree)) return tree.primes === undefined ? splitVectors(tree, pieces) : splitGlued(tree, pieces);
   let cuts: (readonly number[])[] = [];
   for (let depth = 1; depth <= tree.gram.length && cuts.length < pieces * NODES_PER_PIECE; depth += 1) {
     const next = nodesAtDepth(tree, depth, pieces * MOST_NODES_PER_PIECE);

@@ -1,11 +1,11 @@
 /**
- * Chooses the method of a stage. Rows, frames and columns are tried in turn for as many listing steps as the round allows, each going on
+ * Chooses the method of a stage. Rows, frames (by a list of columns and by gluing) and columns are tried in turn for as many listing steps as the round allows, each going on
  * where it stood, until one ends; if none does, the one whose estimate is least goes on alone. Rounds, steps and probes come from the
  * question and from constants of the plan's revision, never from a clock, so everybody chooses the same.
  */
 import { estimate, type Estimate } from './estimate.ts';
 import { METHODS, type Method } from './method.ts';
-import { columnsOf, rankOf, whyNot } from './open-ladder.ts';
+import { columnsOf, framesStage, gluingOf, rankOf, whyNot } from './open-ladder.ts';
 import type { Plan } from './plan.ts';
 import { openRun, type Advance, type Run } from './run.ts';
 import type { Stage } from './stages.ts';
@@ -27,6 +27,8 @@ const ROUNDS = [4_000, 60_000, 600_000];
 const LISTING_STEPS = 160;
 const PROBES = 60;
 const PROBE_STEPS = 1_500_000;
+/** Gluing factors the determinant and reduces lattices: not worth it before the others had a try. */
+const GLUE_FROM_ROUND = 1;
 /** Columns answer `any` and large n; below this excess frames and rows are better. */
 const COLUMNS_FROM = 3;
 
@@ -43,39 +45,45 @@ export function chooseMethod(plan: Plan, stage: Stage, seed: number): ChosenStag
   if (stage.repeats !== undefined) return { stage, ended: null };
   if (plan.forced !== null) return { stage: forcedStage(plan, stage, plan.forced), ended: null };
   const trials = METHODS.map((method): Trial => ({ stage: { ...stage, method }, run: null }));
+  trials.splice(2, 0, { stage: { ...stage, method: 'frames', glue: true }, run: null });
   if (rankOf(plan) > 0)
     for (const [round, units] of ROUNDS.entries()) {
       for (const trial of trials) {
-        if (!mayTry(trial.stage.method, plan, stage)) continue;
+        if (!mayTry(trial.stage, plan, round)) continue;
         const end = advance(plan, trial, units);
         if (end === 'more') continue;
         const { method } = trial.stage;
         const why =
           round === 0 && method === 'rows'
             ? `Rows, ${plan.why}: ${trial.run!.nodes} nodes.`
-            : `${named(method, plan)}: ended after ${trial.run!.nodes} nodes${others(trials, trial)}.`;
+            : `${named(trial.stage, plan)}: ended after ${trial.run!.nodes} nodes${others(trials, trial)}.`;
         return { stage: { ...trial.stage, why }, ended: { run: trial.run!, end } };
       }
     }
   return { stage: byEstimate(plan, trials, seed), ended: null };
 }
 
-function mayTry(method: Method, plan: Plan, stage: Stage): boolean {
-  const excess = stage.dimension - rankOf(plan);
-  if (method === 'columns' && !stage.whole && excess < COLUMNS_FROM) return false;
-  return whyNot(method, plan, stage.dimension, stage.whole) === null;
+function mayTry({ method, glue, dimension, whole }: Stage, plan: Plan, round: number): boolean {
+  const excess = dimension - rankOf(plan);
+  if (method === 'columns' && !whole && excess < COLUMNS_FROM) return false;
+  if (glue === true && (round < GLUE_FROM_ROUND || excess > 1 || whole)) return false;
+  return whyNot(method, plan, dimension, whole) === null;
 }
 
 function advance(plan: Plan, trial: Trial, units: number): Advance {
   if (trial.run === null) {
-    if (trial.stage.method !== 'rows' && columnsOf(plan, trial.stage, units * LISTING_STEPS) === null) return 'more';
+    if (trial.stage.glue === true) {
+      if (gluingOf(plan, trial.stage.dimension) === null) return 'more';
+    } else if (trial.stage.method !== 'rows' && columnsOf(plan, trial.stage, units * LISTING_STEPS) === null)
+      return 'more';
     trial.run = openRun(plan, trial.stage, { from: [], to: null });
   }
   return trial.run.advance(units);
 }
 
-function named(method: Method, plan: Plan): string {
-  return method === 'rows' ? `Rows, ${plan.why}` : method === 'frames' ? 'Frames' : 'Columns';
+function named({ method, glue }: Pick<Stage, 'method' | 'glue'>, plan: Plan): string {
+  if (method === 'rows') return `Rows, ${plan.why}`;
+  return method === 'columns' ? 'Columns' : glue === true ? 'Frames by gluing' : 'Frames';
 }
 
 function others(trials: readonly Trial[], chosen: Trial): string {
@@ -84,10 +92,10 @@ function others(trials: readonly Trial[], chosen: Trial): string {
 }
 
 function byEstimate(plan: Plan, trials: readonly Trial[], seed: number): Stage {
-  const open = trials.filter((t) => t.run !== null);
+  const open = trials.filter((t) => t.run !== null && t.stage.glue !== true);
   if (open.length <= 1) {
     const only = open[0] ?? trials.find((t) => t.stage.method === 'rows')!;
-    return { ...only.stage, why: `${named(only.stage.method, plan)}: no other method can list this in reach.` };
+    return { ...only.stage, why: `${named(only.stage, plan)}: no other method can list this in reach.` };
   }
   const measured = open.map((trial) => {
     const guess = estimate(plan, trial.stage, { probes: PROBES, seed, steps: PROBE_STEPS });
@@ -98,7 +106,7 @@ function byEstimate(plan: Plan, trials: readonly Trial[], seed: number): Stage {
   const told = (m: { trial: Trial; guess: Estimate }) => `about ${Math.round(m.guess.mean)} nodes`;
   return {
     ...best!.trial.stage,
-    why: `${named(best!.trial.stage.method, plan)}: ${best!.guess.probes} probes put the tree at ${told(best!)}${rest
+    why: `${named(best!.trial.stage, plan)}: ${best!.guess.probes} probes put the tree at ${told(best!)}${rest
       .map((m) => `, that of ${m.trial.stage.method} at ${told(m)}`)
       .join('')}.`,
   };
@@ -110,9 +118,14 @@ function stepsPerNode(run: Run): number {
 
 function forcedStage(plan: Plan, stage: Stage, method: Method): Stage {
   const reason = whyNot(method, plan, stage.dimension, stage.whole);
-  if (reason === null && method !== 'rows' && columnsOf(plan, { ...stage, method }) === null)
-    throw new MethodCannot('there are too many admissible columns to list');
-  if (reason === null) return { ...stage, method, why: `${named(method, plan)}, as the question asks.` };
-  if ('least' in plan.target) return { ...stage, method: 'rows', why: `Rows, ${plan.why}: ${reason}.` };
-  throw new MethodCannot(reason);
+  const forced = reason === null ? feasible(plan, { ...stage, method }) : null;
+  if (forced !== null) return { ...forced, why: `${named(forced, plan)}, as the question asks.` };
+  const why = reason ?? 'there are too many admissible columns to list';
+  if ('least' in plan.target) return { ...stage, method: 'rows', why: `Rows, ${plan.why}: ${why}.` };
+  throw new MethodCannot(why);
+}
+
+function feasible(plan: Plan, stage: Stage): Stage | null {
+  if (stage.method === 'frames') return framesStage(plan, stage);
+  return stage.method === 'rows' || columnsOf(plan, stage) !== null ? stage : null;
 }

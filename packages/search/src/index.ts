@@ -6,7 +6,7 @@ export { embeddingMatrix, orbitSize, shortBasis, treeBasis, type Basis, type Emb
 export { estimate, type Estimate, type ProbeOptions } from './estimate.ts';
 export type { FoundOrbit } from './found.ts';
 export { METHODS, type Method } from './method.ts';
-export { countColumns, whyNot } from './open-ladder.ts';
+export { countColumns, gluingOf, whyNot } from './open-ladder.ts';
 export { readPlan, type Plan, type PlanTarget } from './plan.ts';
 export { MethodsDisagree, OrbitSet } from './second-opinion.ts';
 export { openRun, Run, type Advance } from './run.ts';

@@ -5,6 +5,8 @@ import { ColumnsLadder } from './columns-ladder.ts';
 import { dualForm, type DualForm } from './dual-form.ts';
 import { rootsFit } from './frame-list.ts';
 import { frameRoot, FramesLadder, type FrameRoot } from './frames-ladder.ts';
+import { GlueLadder } from './glue-ladder.ts';
+import { gluings, type Gluing } from './gluing.ts';
 import { openRowLadder, type Ladder } from './ladder.ts';
 import type { Method } from './method.ts';
 import type { Stage } from './stages.ts';
@@ -23,6 +25,7 @@ interface Prepared {
   /** What was listed within so many steps. */
   readonly columns: Map<Kept, Tried>;
   readonly frames: Map<number, FrameRoot>;
+  readonly gluings: Map<number, Gluing | null>;
 }
 
 interface Tried {
@@ -35,7 +38,7 @@ const prepared = new WeakMap<Plan, Prepared>();
 function preparedFor(plan: Plan): Prepared {
   const known = prepared.get(plan);
   if (known !== undefined) return known;
-  const fresh: Prepared = { frames: new Map(), columns: new Map() };
+  const fresh: Prepared = { frames: new Map(), columns: new Map(), gluings: new Map() };
   prepared.set(plan, fresh);
   return fresh;
 }
@@ -76,6 +79,28 @@ export function columnsOf(plan: Plan, stage: StageOfColumns, steps = MAX_LISTING
   return listed;
 }
 
+/** Lattices that are glued at most. */
+const MOST_GLUED = 400;
+
+/** The gluings of a plan for n = r or r + 1, made once; null where there are too many or d is not factored. */
+export function gluingOf(plan: Plan, dimension: number): Gluing | null {
+  const { gluings: known } = preparedFor(plan);
+  const excess = dimension - rankOf(plan);
+  if (excess !== 0 && excess !== 1) return null;
+  if (!known.has(excess)) {
+    const form = dualOf(plan);
+    known.set(excess, form === null ? null : gluings(form.gram, form.determinant, excess, MOST_GLUED));
+  }
+  return known.get(excess)!;
+}
+
+/** A stage of frames from a list of columns, or by gluing where the list is too long; null where neither can be. */
+export function framesStage(plan: Plan, stage: Stage): Stage | null {
+  const listed: Stage = { ...stage, method: 'frames' };
+  if (columnsOf(plan, listed) !== null) return listed;
+  return gluingOf(plan, stage.dimension) === null ? null : { ...listed, glue: true };
+}
+
 /** Admissible columns that a finished stage of frames or columns listed: the `vectors` of its tree. */
 export function countColumns(plan: Plan, stage: Stage): number {
   return columnsOf(plan, stage)?.admissible ?? 0;
@@ -99,6 +124,7 @@ export function openLadder(plan: Plan, stage: Stage): Ladder {
   if (stage.method === 'rows' || rankOf(plan) === 0)
     return openRowLadder((at.rows ??= workingForm(plan)), stage.dimension);
   const excess = stage.dimension - rankOf(plan);
+  if (stage.glue === true) return new GlueLadder(gluingOf(plan, stage.dimension)!, stage.dimension);
   const columns = columnsOf(plan, stage);
   if (columns === null) throw new RangeError(`the admissible columns cannot be listed for ${stage.method}`);
   if (stage.method === 'columns') return new ColumnsLadder(dualOf(plan)!, columns, stage.dimension);

@@ -3,10 +3,10 @@
  * orbits. They share no bound and no order, so agreement means something; a disagreement is a fault of ours and is never an answer.
  */
 import type { FoundOrbit } from './found.ts';
-import { METHODS, type Method } from './method.ts';
-import { whyNot } from './open-ladder.ts';
+import type { Method } from './method.ts';
+import { columnsOf, framesStage, whyNot } from './open-ladder.ts';
 import type { Plan } from './plan.ts';
-import type { Conclusion, StageResult, Step } from './stages.ts';
+import type { Conclusion, Stage, StageResult, Step } from './stages.ts';
 
 /** Two methods list different orbits. */
 export class MethodsDisagree extends Error {
@@ -27,19 +27,16 @@ export function withSecondOpinion(plan: Plan, conclusion: Conclusion, results: r
   if (first === undefined) return { conclusion };
   const second = results.find((r) => r.repeats === first.no);
   if (second === undefined) {
-    const method = otherMethod(plan, first);
-    if (method === null) return { conclusion };
-    return {
-      stage: {
-        no: results.length,
-        dimension: first.dimension,
-        purpose: 'all',
-        whole: first.whole,
-        method,
-        why: `Second opinion: ${method}.`,
-        repeats: first.no,
-      },
-    };
+    const stage = otherMethod(plan, first, {
+      no: results.length,
+      dimension: first.dimension,
+      purpose: 'all',
+      whole: first.whole,
+      method: 'rows',
+      why: '',
+      repeats: first.no,
+    });
+    return stage === null ? { conclusion } : { stage: { ...stage, why: `Second opinion: ${stage.method}.` } };
   }
   if (first.orbits !== second.orbits || first.set !== second.set) throw new MethodsDisagree(first, second);
   return {
@@ -56,13 +53,13 @@ export function withSecondOpinion(plan: Plan, conclusion: Conclusion, results: r
 }
 
 /** Frames where n − r ≤ 1, else columns, against rows; rows against both. Null where no other can. */
-function otherMethod(plan: Plan, first: StageResult): Method | null {
-  const can = (method: Method) =>
-    method !== first.method && whyNot(method, plan, first.dimension, first.whole) === null;
-  const preferred: Method[] =
-    first.dimension - plan.order.length <= 1 ? ['frames', 'columns', 'rows'] : ['columns', ...METHODS];
-  if (first.method !== 'rows') return 'rows';
-  return preferred.find(can) ?? null;
+function otherMethod(plan: Plan, first: StageResult, stage: Stage): Stage | null {
+  if (first.method !== 'rows') return stage;
+  const can = (method: Method) => whyNot(method, plan, first.dimension, first.whole) === null;
+  const frames = can('frames') ? framesStage(plan, stage) : null;
+  if (frames !== null && first.dimension - plan.order.length <= 1) return frames;
+  const columns: Stage = { ...stage, method: 'columns' };
+  return can('columns') && columnsOf(plan, columns) !== null ? columns : frames;
 }
 
 const MASK = 0xffffffffffffffffn;

@@ -19,6 +19,8 @@ export interface Stage {
   readonly whole: boolean;
   /** `nextStep` proposes the one that the plan forces, or rows; the chooser settles it. */
   readonly method: Method;
+  /** Frames by gluing, not from a list of columns. */
+  readonly glue?: true;
   /** One sentence: what was chosen and why. */
   readonly why: string;
   /** Repeats an earlier stage by another method: its number. */

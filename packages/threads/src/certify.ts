@@ -13,6 +13,7 @@ import {
 } from '@palmette/certificate';
 import {
   countColumns,
+  gluingOf,
   treeBasis,
   type ArithmeticGroundLike,
   type Basis,
@@ -159,6 +160,18 @@ function treeOf(u: Understood, plan: Plan, result: StageResult): Tree {
       nodes: result.nodes,
       orbits: result.orbits,
     };
+  if (result.glue === true) {
+    const { primes, glued } = gluingOf(plan, result.dimension)!;
+    return {
+      method: 'frames',
+      revision: 2,
+      dimension: result.dimension,
+      basis,
+      primes: primes.map(String),
+      glued: String(glued.length),
+      orbits: result.orbits,
+    };
+  }
   return {
     method: result.method,
     revision: 1,
