@@ -25,6 +25,7 @@ export function cores(): void {
       const [before, busyBefore] = [performance.now(), busySeconds()];
       const child = cli.answer(document, { cpuSeconds: LIMIT_SECONDS, cpus });
       const clock = (performance.now() - before) / 1000;
+      const others = Math.max(0, busySeconds() - busyBefore - child.cpuSeconds);
       console.log(
         `| ${cpus.split(',').length} | ${clock.toFixed(1)} | ${child.cpuSeconds.toFixed(1)} | ${others.toFixed(1)} | ${child.status} |`,
       );
