@@ -25,8 +25,8 @@ const SHORT: Readonly<Record<Ground, string>> = {
 };
 
 /** “exhaustion”, “the determinant”, for a table and after “Ground:”. */
-export function groundInShort(ground: Ground): string {
-  return SHORT[ground];
+export function groundInShort(ground: string): string {
+  return (SHORT as Readonly<Record<string, string>>)[ground] ?? ground;
 }
 
 /** One sentence that says why Λ is excluded from this Z^n. */
@@ -62,7 +62,7 @@ function columnReason(
   dimension: number | null,
   rank: number | null,
 ): string {
-  const bound = dimension !== null && dimension === rank ? 'cᵀQ⁻¹c = 1' : 'cᵀQ⁻¹c ≤ 1';
+  const bound = dimension !== null && dimension === rank ? 'c^TQ^{−1}c = 1' : 'c^TQ^{−1}c ≤ 1';
   if (vectors === '0')
     return `Every column c of an embedding that is not zero has ${bound}, and no integer column does.`;
   const only = vectors === '1' ? '1 integer column' : `${integerInWords(vectors)} integer columns`;

@@ -53,6 +53,26 @@ describe('the letter about an ending', () => {
   });
 });
 
+describe('a letter about two methods or a refusal', () => {
+  const broken = { ...facts, ending: 'broken', verdict: 'open', ground: null } as const;
+  it('names both results of a disagreement in the subject and the body', () => {
+    const reason = 'two methods disagree at n = 9: rows list 3 orbits (set 0a), frames list 2 orbits (set 0b)';
+    const letter = endingLetter({ ...broken, reason }, place);
+    expect(letter.subject).toBe('Broken, two methods disagree: P(3, 5, −7)');
+    expect(letter.body).toContain('at n = 9: rows list 3 orbits (set 0a), frames list 2 orbits (set 0b).');
+    expect(letter.body).not.toMatch(/embeds in|excluded from/i);
+  });
+
+  it('says what to mend', () => {
+    const letter = endingLetter(
+      { ...broken, reason: 'refused: /method this method cannot answer. Ask again with this mended' },
+      place,
+    );
+    expect(letter.subject).toBe('Refused: P(3, 5, −7)');
+    expect(letter.body).toContain('cannot be answered as it was asked: this method cannot answer.');
+  });
+});
+
 describe('times', () => {
   it('are written in the zone that is named', () => {
     expect(momentInWords('2026-12-31T23:30:00Z', 'Europe/Berlin')).toBe('on 1 January at 00:30 (Europe/Berlin)');

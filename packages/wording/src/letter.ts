@@ -3,7 +3,9 @@
  * where to look. An open search says first that it is not a no.
  */
 import type { Verdict } from '@palmette/contracts';
+import { groundInShort } from './grounds.ts';
 import { cpuTimeInWords, momentInWords } from './letter-time.ts';
+import { disagreementIn, refusalIn } from './states.ts';
 
 export interface Letter {
   readonly subject: string;
@@ -37,14 +39,6 @@ export interface LetterPlace {
   readonly timeZone: string;
 }
 
-const GROUND_WORDS: Readonly<Record<string, string>> = {
-  embedding: 'an embedding',
-  exhaustion: 'exhaustion',
-  determinant: 'the determinant',
-  hilbert: 'Hilbert symbols',
-  dimension: 'the dimension',
-};
-
 export function endingLetter(facts: EndingFacts, place: LetterPlace): Letter {
   const parts = { settled, spent, broken }[facts.ending](facts, place);
   const { title, studyTitle } = facts.question;
@@ -66,7 +60,7 @@ interface Parts {
 }
 
 function settled(facts: EndingFacts, place: LetterPlace): Parts {
-  const ground = facts.ground === null ? '' : ` Ground: ${GROUND_WORDS[facts.ground] ?? facts.ground}; checked.`;
+  const ground = facts.ground === null ? '' : ` Ground: ${groundInShort(facts.ground)}; checked.`;
   return {
     subject: verdictInShort(facts),
     paragraphs: [
@@ -87,6 +81,26 @@ function spent(facts: EndingFacts, place: LetterPlace): Parts {
 }
 
 function broken(facts: EndingFacts, place: LetterPlace): Parts {
+  const refusal = refusalIn(facts.reason);
+  if (refusal !== null) {
+    return {
+      subject: 'Refused',
+      paragraphs: [
+        `${begun(facts, place)} cannot be answered as it was asked: ${sentence(refusal.message)}`,
+        'Nothing was searched and nothing can be concluded. Restate the question with this mended.',
+      ],
+    };
+  }
+  const disagreement = disagreementIn(facts.reason);
+  if (disagreement !== null) {
+    return {
+      subject: 'Broken, two methods disagree',
+      paragraphs: [
+        `${begun(facts, place)} is broken: two methods disagree, ${sentence(disagreement)}`,
+        `One of them is wrong, which is a fault of Palmette and no answer: no verdict is shown. Both results are kept. ${cpuTimeInWords(facts.cpuMs)} of CPU time.`,
+      ],
+    };
+  }
   return {
     subject: 'Broken',
     paragraphs: [

@@ -57,7 +57,7 @@ export function refusalIn(reason: string | null): { readonly path: string; reado
 }
 
 /** Where two methods disagree and what each of them lists; null if that is not the reason. */
-function disagreementIn(reason: string | null): string | null {
+export function disagreementIn(reason: string | null): string | null {
   const found = /two methods disagree(?: at n = (\d+))?: (.+)$/s.exec(reason ?? '');
   if (found === null) return null;
   return `${found[1] === undefined ? '' : `at n = ${found[1]}: `}${found[2]}`;

@@ -97,10 +97,10 @@ describe('grounds', () => {
   it('count the columns that could occur', () => {
     const column = { ...facts, ground: 'column', rank: 6 } as const;
     expect(exclusionReason({ ...column, columns: { vectors: '0', spanned: 0 } })).toBe(
-      'Every column c of an embedding that is not zero has cᵀQ⁻¹c ≤ 1, and no integer column does.',
+      'Every column c of an embedding that is not zero has c^TQ^{−1}c ≤ 1, and no integer column does.',
     );
     expect(exclusionReason({ ...column, dimension: 6, columns: { vectors: '1', spanned: 1 } })).toBe(
-      'Up to sign only 1 integer column could occur in an embedding (cᵀQ⁻¹c = 1), and the dimension of their span is 1, where 6 is needed.',
+      'Up to sign only 1 integer column could occur in an embedding (c^TQ^{−1}c = 1), and the dimension of their span is 1, where 6 is needed.',
     );
     expect(exclusionReason({ ...column, dimension: null, columns: { vectors: '12', spanned: 5 } })).toContain(
       '12 integer',

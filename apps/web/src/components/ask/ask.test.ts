@@ -45,7 +45,7 @@ describe('words', () => {
       { rank: 6, determinant: '3' } as SourceReading,
     );
     expect(at.heading).toBe('Excluded: it embeds in no Z^n, Z^6 included.');
-    expect(at.lead).toMatch(/cᵀQ⁻¹c ≤ 1, and no integer column does\. .*3 is not one/);
+    expect(at.lead).toMatch(/c\^TQ\^\{−1\}c ≤ 1, and no integer column does\. .*3 is not one/);
     const any = settledInWords(
       { excluded: [{ dimension: null, ground: nowhere }], nowhere, settled: true, next: null },
       reading,

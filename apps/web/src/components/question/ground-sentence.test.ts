@@ -20,7 +20,7 @@ describe('why a verdict holds', () => {
     const excluded = { ...question, verdict: 'excluded', ground: 'column', dimension: null } as QuestionView;
     const exclusions = [{ dimension: null, ground: 'column' as const, vectors: '4', spanned: 2 }];
     expect(groundSentence(excluded, head({ exclusions, list: null }))).toBe(
-      'Up to sign only 4 integer columns could occur in an embedding (cᵀQ⁻¹c ≤ 1), and the dimension of their span is 2, where 3 is needed.',
+      'Up to sign only 4 integer columns could occur in an embedding (c^TQ^{−1}c ≤ 1), and the dimension of their span is 2, where 3 is needed.',
     );
     expect(evidenceFacts(excluded, head({ exclusions, list: null }))).toEqual([]);
   });
