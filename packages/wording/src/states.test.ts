@@ -70,6 +70,8 @@ describe('a search that is not settled', () => {
     const reason = 'two methods disagree at n = 7: rows list 3 orbits (set 0a), frames list 2 orbits (set 0b)';
     const broken: StateFacts = { ...searching, state: 'broken', reason };
     expect(stateHeading(broken)).toBe('Broken: two methods disagree');
+    const told = `a worker that ran a part of this search ended 3 times (${reason}). Ask again`;
+    expect(stateLead({ ...broken, reason: told })).toBe(stateLead(broken));
     expect(stateLead(broken)).toBe(
       'At n = 7: rows list 3 orbits (set 0a), frames list 2 orbits (set 0b). One of them is wrong, which is a fault of Palmette and no answer. Both results are kept. No verdict is shown until this is explained.',
     );

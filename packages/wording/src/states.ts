@@ -56,11 +56,13 @@ export function refusalIn(reason: string | null): { readonly path: string; reado
   return found === null ? null : { path: found[1] ?? '', message: found[2]! };
 }
 
+const RESULT = String.raw`\w+ list \d+ orbits(?: \(set [^)]*\))?`;
+const DISAGREEMENT = new RegExp(`two methods disagree at n = (\\d+): (${RESULT}, ${RESULT})`);
+
 /** Where two methods disagree and what each of them lists; null if that is not the reason. */
 export function disagreementIn(reason: string | null): string | null {
-  const found = /two methods disagree(?: at n = (\d+))?: (.+)$/s.exec(reason ?? '');
-  if (found === null) return null;
-  return `${found[1] === undefined ? '' : `at n = ${found[1]}: `}${found[2]}`;
+  const found = DISAGREEMENT.exec(reason ?? '');
+  return found === null ? null : `at n = ${found[1]}: ${found[2]}`;
 }
 
 /** Null: the reason speaks for itself. */
