@@ -8,6 +8,9 @@ import { join } from 'node:path';
 import { overLimit, verifyWitness, type Answer, type Problem, type Solver } from './solver.ts';
 import { isInstalled, timedChild } from './timed-child.ts';
 
+/** Twice the terms of the program: beyond this its file is over half a gigabyte and cbc would not read it within the limit. */
+const MOST_TERMS = 60_000_000;
+
 export const integerProgramPeer: Solver = {
   name: 'integer program (gp, cbc)',
   missing: ['gp', 'cbc'].find((program) => !isInstalled(program)) ?? null,
@@ -23,6 +26,8 @@ function solve(problem: Problem, cpuLimit: number): Answer {
     if (!('vectors' in listed)) return listed;
     const { vectors } = listed;
     const figures = { vectors: vectors.length, listCpuSeconds: listed.cpuSeconds };
+    if (vectors.length * problem.gram.length ** 2 > MOST_TERMS)
+      return { outcome: 'failed', cpuSeconds: listed.cpuSeconds, figures: { ...figures, why: 'program too large' } };
     const before = process.cpuUsage();
     const [program, solution] = [join(folder, 'problem.lp'), join(folder, 'solution')];
     writeFileSync(program, linearProgram(problem, vectors));
