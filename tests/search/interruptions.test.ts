@@ -29,6 +29,8 @@ const CASES: readonly (readonly [string, number, Method])[] = [
   ['A7', 2, 'rows'],
   ['P(3, 3, -15)', 2, 'rows'],
   ['10', 6, 'rows'],
+  // more than 64 columns: listed without the projection bound
+  ['A40', 30, 'rows'],
   ['8 0 0 0; 0 8 0 0; 0 0 8 0; 0 0 0 8', 0, 'frames'],
   ['4 0 0 0; 0 4 0 0; 0 0 4 0; 0 0 0 4', 1, 'frames'],
   ['[5, 5, 5, 5, 5]', 2, 'frames'],

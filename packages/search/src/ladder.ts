@@ -6,6 +6,7 @@ import { BigListing } from './big-listing.ts';
 import type { FoundOrbit } from './found.ts';
 import { Columns } from './columns.ts';
 import { Listing, type Listed, type ListingState } from './listing.ts';
+import { ProjectionLadder } from './projection-ladder.ts';
 import type { WorkingForm } from './working-form.ts';
 
 export interface Ladder {
@@ -26,8 +27,16 @@ export interface Ladder {
   readonly bytes: number;
 }
 
+/** Most nonzero columns of a node with children for which the projection bound is used: it costs their square. */
+const PROJECTED_COLUMNS = 64;
+
 /** @param dimension n: the root is n zero columns */
 export function openRowLadder(form: WorkingForm, dimension: number): Ladder {
+  if (form.projection !== null) {
+    const columns = form.norms.subarray(0, form.rank - 1).reduce((sum, norm) => sum + norm, 1);
+    const cap = Math.min(dimension, columns);
+    if (cap <= PROJECTED_COLUMNS) return new ProjectionLadder(form.projection, form.order, dimension, cap);
+  }
   return form.small ? new SmallLadder(form, dimension) : new BigLadder(form, dimension);
 }
 

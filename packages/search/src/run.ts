@@ -28,8 +28,9 @@ interface SavedRun {
 }
 
 export class Run {
-  nodes = 0n;
-  orbits = 0n;
+  /** Numbers: a run of 2^53 nodes does not end. */
+  private entered = 0;
+  private leaves = 0;
   private readonly rank: number;
   private readonly ladder: Ladder;
   /** Child index at each depth; its length is the depth of the node where the run stands. */
@@ -55,8 +56,8 @@ export class Run {
     this.to = interval.to;
     if (checkpoint === undefined) return;
     const saved = JSON.parse(checkpoint) as SavedRun;
-    this.nodes = BigInt(saved.nodes);
-    this.orbits = BigInt(saved.orbits);
+    this.entered = Number(saved.nodes);
+    this.leaves = Number(saved.orbits);
     if (saved.levels === null) return;
     this.begun = true;
     this.path.push(...saved.path);
@@ -67,6 +68,14 @@ export class Run {
       this.ladder.restore(depth, listing);
       this.index[depth] = next;
     });
+  }
+
+  get nodes(): bigint {
+    return BigInt(this.entered);
+  }
+
+  get orbits(): bigint {
+    return BigInt(this.leaves);
   }
 
   /** Works for about `nodes` nodes. `found` only where one embedding is wanted. */
@@ -115,18 +124,18 @@ export class Run {
   }
 
   private foundOne(): boolean {
-    if (this.stage.purpose !== 'one' || this.orbits === 0n) return false;
+    if (this.stage.purpose !== 'one' || this.leaves === 0) return false;
     this.finished = true;
     return true;
   }
 
   /** Counts the node that the path leads to and opens the listing of its children. */
   private enter(): void {
-    this.nodes += 1n;
+    this.entered += 1;
     const depth = this.path.length;
     this.atLeaf = depth === 0 ? this.rank === 0 : this.ladder.childIsLeaf(depth - 1);
     if (this.atLeaf) {
-      this.orbits += 1n;
+      this.leaves += 1;
       this.found.push(depth === 0 ? { columns: [], zeros: this.stage.dimension } : this.ladder.orbit(depth - 1));
       return;
     }
@@ -181,8 +190,8 @@ export class Run {
             listing: this.ladder.state(depth),
           }))
         : null,
-      nodes: this.nodes.toString(),
-      orbits: this.orbits.toString(),
+      nodes: String(this.entered),
+      orbits: String(this.leaves),
     };
     return JSON.stringify(saved);
   }
