@@ -24,7 +24,7 @@ export const METHOD_WORDS: Readonly<Record<MethodName, MethodWords>> = {
   },
   frames: {
     name: 'frames',
-    what: 'looks for columns that are orthogonal to each other in the dual; good near the rank',
+    what: 'looks for columns that are orthogonal in the dual, or glues the lattice to unimodular ones; good near the rank',
     unless: 'it answers only for n − rank from 0 to 2',
   },
 };
@@ -36,12 +36,15 @@ export interface TreeFacts {
   readonly nodes?: string | undefined;
   /** Of frames and columns: admissible columns up to sign. */
   readonly vectors?: string | undefined;
+  /** Of frames by gluing: unimodular lattices that were looked at. */
+  readonly glued?: string | undefined;
 }
 
 /** “rows, 120 nodes”, “frames, 36 columns that could occur”. */
-export function treeInWords({ method, nodes, vectors }: TreeFacts): string {
+export function treeInWords({ method, nodes, vectors, glued }: TreeFacts): string {
   if (nodes !== undefined) return `${method}, ${plural(nodes, 'node')}`;
   if (vectors !== undefined) return `${method}, ${plural(vectors, 'column')} that could occur`;
+  if (glued !== undefined) return `${method} by gluing, ${plural(glued, 'unimodular lattice')}`;
   return method;
 }
 

@@ -28,6 +28,8 @@ export interface FileTree {
   readonly nodes?: string;
   /** Of frames and columns: admissible columns up to sign. */
   readonly vectors?: string;
+  /** Of frames by gluing: unimodular lattices. */
+  readonly glued?: string;
   readonly orbits: string;
 }
 
