@@ -10,7 +10,9 @@ describe('methods in words', () => {
 
   it('counts what a tree has', () => {
     expect(treeInWords({ method: 'rows', nodes: '1' })).toBe('rows, 1 node');
-    expect(treeInWords({ method: 'frames', vectors: '12000' })).toBe('frames, 12\u202f000 columns that could occur');
+    expect(treeInWords({ method: 'frames', vectors: '12000' })).toBe(
+      'frames, out of 12\u202f000 columns that could occur',
+    );
     expect(treeInWords({ method: 'frames', glued: '3' })).toBe('frames by gluing, 3 unimodular lattices');
     expect(treeInWords({ method: 'later' })).toBe('later');
   });

@@ -40,10 +40,10 @@ export interface TreeFacts {
   readonly glued?: string | undefined;
 }
 
-/** “rows, 120 nodes”, “frames, 36 columns that could occur”. */
+/** “rows, 120 nodes”, “frames, out of 36 columns that could occur”. */
 export function treeInWords({ method, nodes, vectors, glued }: TreeFacts): string {
   if (nodes !== undefined) return `${method}, ${plural(nodes, 'node')}`;
-  if (vectors !== undefined) return `${method}, ${plural(vectors, 'column')} that could occur`;
+  if (vectors !== undefined) return `${method}, out of ${plural(vectors, 'column')} that could occur`;
   if (glued !== undefined) return `${method} by gluing, ${plural(glued, 'unimodular lattice')}`;
   return method;
 }

@@ -43,7 +43,7 @@ describe('answers of tests', () => {
     const answer = { groupOrder: '12', count: '2', representatives: [0, 3], generators: [generator] };
     expect(testFolded('doubleOrbits', answer)).toEqual({
       title: '1 generator',
-      note: 'One of each: embeddings 1 and 4.',
+      note: 'One of each: embeddings 1 and 4. That they generate the whole group is worked out by the search and not repeated by the checker.',
       matrices: [' 0 −1\n 1 10'],
       left: 0,
     });

@@ -67,6 +67,7 @@ export interface FoldedAnswer {
 /** Matrices of an answer that are set out on a screen, and entries that each may have. */
 const SHOWN_MATRICES = 12;
 const SHOWN_ENTRIES = 2_500;
+const SHOWN_PLACES = 20;
 
 /** What stands behind an answer and is shown only on wish: the generators of the automorphisms. */
 export function testFolded(name: string, answer: TestAnswer): FoldedAnswer | null {
@@ -74,13 +75,13 @@ export function testFolded(name: string, answer: TestAnswer): FoldedAnswer | nul
   const generators = answer.generators as readonly (readonly (readonly unknown[])[])[];
   const shown = generators.slice(0, SHOWN_MATRICES).filter((rows) => rows.length ** 2 <= SHOWN_ENTRIES);
   const places = Array.isArray(answer.representatives) ? answer.representatives.map((i) => String(Number(i) + 1)) : [];
-  const some = places.slice(0, 20);
+  const listed = places.length > SHOWN_PLACES ? `${places.slice(0, SHOWN_PLACES).join(', ')} …` : listInWords(places);
   return {
     title: plural(generators.length, 'generator'),
-    note:
-      places.length === 0
-        ? ''
-        : `One of each: ${places.length === 1 ? 'embedding' : 'embeddings'} ${places.length > some.length ? `${some.join(', ')} …` : listInWords(some)}.`,
+    note: [
+      ...(places.length === 0 ? [] : [`One of each: ${places.length === 1 ? 'embedding' : 'embeddings'} ${listed}.`]),
+      'That they generate the whole group is worked out by the search and not repeated by the checker.',
+    ].join(' '),
     matrices: shown.map(matrixText),
     left: generators.length - shown.length,
   };

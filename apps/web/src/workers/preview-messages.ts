@@ -84,6 +84,8 @@ export type QuickLook =
       readonly ms: number;
       /** CPU time of the whole tree in seconds, 8 times in 10; null where nothing sensible can be said. */
       readonly seconds: { readonly low: number; readonly likely: number; readonly high: number } | null;
+      /** The methods that the estimate compares. */
+      readonly tried: readonly string[];
       readonly first: { readonly matrix: readonly (readonly string[])[]; readonly zeroColumns: number } | null;
     };
 

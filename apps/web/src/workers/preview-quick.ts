@@ -7,24 +7,20 @@ import { reducedBasis, type ColumnGround, type Lattice } from '@palmette/lattice
 import {
   choosePlan,
   embeddingMatrix,
-  estimate,
   nextStep,
-  openRun,
+  type Basis,
+  type FoundOrbit,
   type Plan,
   type StageResult,
 } from '@palmette/search';
 import { groundsOf } from './preview-grounds.ts';
 import type { ArithmeticReading, DimensionGround, PreviewOrder, QuickLook } from './preview-messages.ts';
+import { secondsLeast, tryMethods, type Trial } from './preview-trials.ts';
 
 const LISTING_MS = 200;
 const LISTING_NODES = 100_000n;
-/** Nodes between two looks at the clock. */
-const SLICE = 500;
 /** Choosing a plan takes longer than a look beyond this rank. */
 const QUICK_RANK = 120;
-/** Probes of the estimate, and the listing steps that all of them may take. */
-const PROBES = 40;
-const PROBE_STEPS = 300_000;
 /** The same question gets the same plan; a look needs no more of its seed. */
 const SEED = 1;
 /** Above the rank by more than this, arithmetic has no condition (FORMAT.md, section 7). */
@@ -53,6 +49,8 @@ export function arithmeticReading(lattice: Lattice, target: Target, ground = gro
   return next <= upTo ? open(excluded, next) : settled(excluded);
 }
 
+type First = NonNullable<Extract<QuickLook, { readonly kind: 'done' }>['first']>;
+
 /** @param now milliseconds, for the bound of the listing */
 export function quickLook(
   lattice: Lattice,
@@ -66,7 +64,7 @@ export function quickLook(
   const plan = choosePlan({ gram: reduced.gram, target: order.target, scope: order.scope, seed: SEED }, arithmetic);
   const results: StageResult[] = [];
   const began = now();
-  let first: { matrix: string[][]; zeroColumns: number } | null = null;
+  let first: First | null = null;
   let nodes = 0n;
   for (;;) {
     const step = nextStep(plan, results, arithmetic);
@@ -83,52 +81,35 @@ export function quickLook(
         first: verdict === 'embeds' ? first : null,
       };
     }
-    const { stage } = step;
-    const run = openRun(plan, stage, { from: [], to: null });
-    let state = run.advance(SLICE);
-    first = firstOf(plan, run.takeFound(), reduced.basis, first);
-    while (state === 'more' && now() - began < LISTING_MS && nodes + run.nodes < LISTING_NODES) {
-      state = run.advance(SLICE);
-      first = firstOf(plan, run.takeFound(), reduced.basis, first);
-    }
-    nodes += run.nodes;
-    if (state === 'more') {
-      const ms = now() - began;
+    const left = { ms: LISTING_MS - (now() - began), nodes: LISTING_NODES - nodes };
+    const trials = tryMethods(plan, step.stage, left, now);
+    const [trial] = trials as [Trial, ...Trial[]];
+    nodes = trials.reduce((sum, one) => sum + one.nodes, nodes);
+    const found = trials.find((one) => one.first !== null)?.first ?? null;
+    first = found === null ? null : placed(plan, found, reduced.basis);
+    if (trial.end === 'more') {
       return {
         kind: 'unfinished',
-        dimension: 'any' in order.target ? null : stage.dimension,
-        orbits: run.orbits.toString(),
+        dimension: 'any' in order.target ? null : step.stage.dimension,
+        orbits: trials.reduce((most, { orbits }) => (orbits > most ? orbits : most), 0n).toString(),
         nodes: nodes.toString(),
-        ms,
-        seconds: secondsOf(plan, stage, nodes, ms),
+        ms: now() - began,
+        seconds: secondsLeast(plan, trials, SEED),
+        tried: trials.map(({ stage }) => stage.method),
         first,
       };
     }
-    results.push({ ...stage, complete: state === 'done', nodes: run.nodes.toString(), orbits: run.orbits.toString() });
-    if (run.orbits === 0n) first = null;
+    results.push({
+      ...trial.stage,
+      complete: trial.end === 'done',
+      nodes: trial.nodes.toString(),
+      orbits: trial.orbits.toString(),
+    });
   }
 }
 
-type Step = Extract<ReturnType<typeof nextStep>, { readonly stage: unknown }>;
-
-/** The estimate of the tree at the rate that was just seen. */
-function secondsOf(plan: Plan, stage: Step['stage'], nodes: bigint, ms: number) {
-  const { mean, low, high } = estimate(plan, stage, { probes: PROBES, seed: SEED, steps: PROBE_STEPS });
-  const rate = (Number(nodes) / Math.max(1, ms)) * 1000;
-  // fewer nodes than were listed already: the probes missed most of the tree
-  if (!Number.isFinite(high) || rate <= 0 || mean <= Number(nodes)) return null;
-  const least = Math.max(low, Number(nodes));
-  return { low: least / rate, likely: Math.max(mean, least) / rate, high: Math.max(high, least) / rate };
-}
-
-function firstOf(
-  plan: Plan,
-  found: Parameters<typeof embeddingMatrix>[1][],
-  radical: Parameters<typeof embeddingMatrix>[2],
-  before: { matrix: string[][]; zeroColumns: number } | null,
-): { matrix: string[][]; zeroColumns: number } | null {
-  const [orbit] = found;
-  if (before !== null || orbit === undefined) return before;
-  const { rows, zeros } = embeddingMatrix(plan, orbit, radical);
+/** In the rows of the source; zero columns are counted. */
+function placed(plan: Plan, found: FoundOrbit, radical: Basis | null): First {
+  const { rows, zeros } = embeddingMatrix(plan, found, radical);
   return { matrix: rows.map((row) => row.map(String)), zeroColumns: zeros };
 }

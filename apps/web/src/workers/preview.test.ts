@@ -120,6 +120,19 @@ describe('the quick look', () => {
     expect(seconds!.likely).toBeLessThanOrEqual(seconds!.high);
   });
 
+  it('goes on with frames where rows do not end in their half', () => {
+    // B·Bᵀ for a random B with entries −1, 0, 1: rows are lost in it, the unit columns are few
+    let state = 7;
+    const next = () => (state = (state * 48271) % 2147483647);
+    const b: number[][] = Array.from({ length: 14 }, () => Array.from({ length: 14 }, () => (next() % 3) - 1));
+    const rows = b.map((x) => b.map((y) => x.reduce((sum, e, c) => sum + e * y[c]!, 0)));
+    const order = { source: { kind: 'matrix' as const, rows }, target: { excess: 0 }, scope: 'all' as const };
+    const quick = quickLook(buildLattice(order.source), order, () => 0);
+    expect(quick).toMatchObject({ kind: 'done', verdict: 'embeds', orbits: '1', complete: true });
+    // the half of rows is counted too: they did not end in it
+    expect(Number((quick as { nodes: string }).nodes)).toBeGreaterThanOrEqual(50_000);
+  });
+
   it('does not try what is too big', () => {
     expect(look('[' + new Array(130).fill(2).join(',') + ']', { excess: 1 })).toMatchObject({ kind: 'none' });
   });

@@ -86,10 +86,11 @@ describe('words', () => {
       nodes: '100000',
       ms: 180,
       seconds: { low: 40, likely: 130, high: 300 },
+      tried: ['rows'],
       first: null,
     });
     expect(open.lead).toContain('says nothing about the answer');
-    expect(open.lead).toMatch(/8 times in 10/);
+    expect(open.lead).toMatch(/8 times in 10.*That is by rows alone; the search compares its methods/);
     const far = quickInWords({
       kind: 'unfinished',
       dimension: null,
@@ -97,9 +98,11 @@ describe('words', () => {
       nodes: '1284',
       ms: 200,
       seconds: { low: 0.4, likely: 1e22, high: 1e26 },
+      tried: ['rows', 'frames'],
       first: null,
     });
     expect(far.heading).toBe('It needs a search.');
+    expect(far.lead).not.toContain('alone');
     expect(far.lead).toMatch(/from under 1 s to more than 100 years/);
   });
 

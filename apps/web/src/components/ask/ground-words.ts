@@ -78,10 +78,18 @@ export function quickInWords(quick: Exclude<QuickLook, { kind: 'none' }>): Said 
       : `It found ${plural(quick.orbits, 'embedding')} so far, and others may follow`;
   return {
     heading: quick.dimension === null ? 'It needs a search.' : `${space(quick.dimension)} needs a search.`,
-    lead: `A quick look in this browser listed ${countInWords(quick.nodes)} nodes. ${found}. ${timeInWords(quick.seconds)}`,
+    lead: `A quick look in this browser listed ${countInWords(quick.nodes)} nodes. ${found}. ${timeInWords(quick.seconds)}${othersInWords(quick)}`,
   };
 }
 
+/** A look that tried one method says so: the search has three, and the best may need a fraction of the time. */
+function othersInWords({ seconds, tried }: Extract<QuickLook, { kind: 'unfinished' }>): string {
+  if (seconds === null || seconds.high < WORTH_COMPARING || tried.length > 1) return '';
+  return ` That is by ${tried[0]!} alone; the search compares its methods, and another may be much faster.`;
+}
+
+/** Seconds. */
+const WORTH_COMPARING = 10;
 /** Seconds in 100 years. */
 const OUT_OF_REACH = 100 * 365 * 86_400;
 

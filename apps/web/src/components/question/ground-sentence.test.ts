@@ -29,7 +29,7 @@ describe('why a verdict holds', () => {
 describe('facts of the evidence', () => {
   it('name the tree', () => {
     expect(evidenceFacts(question, head({ exclusions: [], list: frames }))).toEqual([
-      { name: 'listed by', value: 'frames, 9 columns that could occur' },
+      { name: 'listed by', value: 'frames, out of 9 columns that could occur' },
     ]);
     expect(evidenceFacts(question, null)).toEqual([]);
   });
@@ -37,7 +37,7 @@ describe('facts of the evidence', () => {
   it('say that two methods agree, of a list and of an exclusion', () => {
     expect(evidenceFacts(question, head({ exclusions: [], list: frames, second: rows }))).toEqual([
       { name: 'second opinion', value: 'two methods agree: rows, frames' },
-      { name: 'listed by', value: 'frames, 9 columns that could occur; and by rows, 7 nodes' },
+      { name: 'listed by', value: 'frames, out of 9 columns that could occur; and by rows, 7 nodes' },
     ]);
     const exclusions = [{ dimension: 3, ground: 'exhaustion' as const, tree: rows }];
     const excluded = { ...question, verdict: 'excluded' } as QuestionView;
