@@ -21,7 +21,7 @@ function sequence(seed: number): (below: number) => number {
   };
 }
 
-const CASES: readonly (readonly [string, number, Method])[] = [
+const CASES: readonly (readonly [string, number, Method | 'fewest'])[] = [
   ['[5, 5, 5, 5, 5]', 2, 'rows'],
   ['[4, 3, 5, 3, 4, 3]', 2, 'rows'],
   ['D4', 2, 'rows'],
@@ -29,6 +29,8 @@ const CASES: readonly (readonly [string, number, Method])[] = [
   ['A7', 2, 'rows'],
   ['P(3, 3, -15)', 2, 'rows'],
   ['10', 6, 'rows'],
+  ['[4, 3, 5, 3, 4, 3]', 2, 'fewest'],
+  ['6 1 2; 1 7 3; 2 3 8', 3, 'fewest'],
   // more than 64 columns: listed without the projection bound
   ['A40', 30, 'rows'],
   ['8 0 0 0; 0 8 0 0; 0 0 8 0; 0 0 0 8', 0, 'frames'],
@@ -40,12 +42,15 @@ const CASES: readonly (readonly [string, number, Method])[] = [
   ['4 0 0; 0 4 0; 0 0 4', 4, 'columns'],
 ];
 
-function problem(text: string, excess: number, forced: Method): { plan: Plan; stage: Stage } {
+function problem(text: string, excess: number, method: Method | 'fewest'): { plan: Plan; stage: Stage } {
   const { gram } = reducedBasis(buildLattice(text === '10' ? { kind: 'matrix', rows: [[10]] } : readSourceText(text)));
-  const plan = choosePlan({ gram, target: { excess }, scope: 'all', forced, seed: 3 }, () => null);
+  const plan = choosePlan(
+    { gram, target: { excess }, scope: 'all', forced: method === 'fewest' ? 'rows' : method, seed: 3 },
+    () => null,
+  );
   const step = nextStep(plan, [], () => null);
   if (!('stage' in step)) throw new Error('expected a stage');
-  return { plan, stage: step.stage };
+  return { plan, stage: method === 'fewest' ? { ...step.stage, fewest: true } : step.stage };
 }
 
 interface Piece extends Interval {

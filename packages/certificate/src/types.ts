@@ -51,10 +51,10 @@ export interface CertificateEmbedding {
 
 export type TreeBasis = null | { readonly matrix: StringMatrix; readonly inverse: StringMatrix };
 
-/** The tree of rows, revision 1. FORMAT.md, section 7. */
+/** The tree of rows: revision 1 in a fixed order, revision 2 with the row chosen at each node. FORMAT.md, section 7. */
 export interface RowsTree {
   readonly method: 'rows';
-  readonly revision: 1;
+  readonly revision: 1 | 2;
   readonly dimension: number;
   readonly basis: TreeBasis;
   readonly order: readonly number[];

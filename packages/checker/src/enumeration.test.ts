@@ -1,5 +1,6 @@
 /** The enumeration against itself (two ways to list children, two kinds of integers, cut and interrupted) and against brute force. */
 import { describe, expect, it } from 'vitest';
+import { determinantOf } from './arithmetic.ts';
 import { exactStep } from './exact-step.ts';
 import { BIGINTS, DOUBLES, type Kind } from './int-kinds.ts';
 import { sparseChild, type SparseNode } from './sparse-columns.ts';
@@ -101,6 +102,30 @@ function isDefinite(gram: readonly (readonly number[])[]): boolean {
   }
   return true;
 }
+
+describe('rows chosen at each node', () => {
+  it('the same orbits as in a fixed order, in pieces and interrupted, 150 random forms', () => {
+    const next = numbers(77);
+    for (let k = 0; k < 150; k += 1) {
+      const rank = 2 + next(3);
+      const b = Array.from({ length: rank }, () => Array.from({ length: rank + next(2) }, () => next(5) - 2));
+      const gram = b.map((v) => b.map((w) => v.reduce((sum, x, i) => sum + x * (w[i] ?? 0), 0)));
+      if (determinantOf(gram.map((row) => row.map(BigInt))) === 0n) continue;
+      const tree = treeOf(gram, rank + next(3));
+      const chosen: CheckRowsTree = { ...tree, chosen: true };
+      const whole = wholeOf(chosen);
+      expect({ gram, orbits: whole.orbits }).toEqual({ gram, orbits: wholeOf(tree).orbits });
+      const parts = { nodes: 0n, orbits: 0n };
+      for (const piece of splitCheck(chosen, 4)) {
+        let run = openCheckRun(chosen, piece);
+        while (run.advance(1 + next(4)) === 'more') run = openCheckRun(chosen, piece, run.checkpoint());
+        parts.nodes += run.nodes;
+        parts.orbits += run.orbits;
+      }
+      expect({ gram, ...parts }).toEqual({ gram, ...whole });
+    }
+  });
+});
 
 describe('against other ways to count', () => {
   it('brute force over matrices, small random lattices', () => {

@@ -129,7 +129,8 @@ function readTree(lattice: CheckedLattice, value: Json | undefined, place: strin
   const glued = method === 'frames' && (value as { revision?: Json }).revision === 2;
   const counted = method === 'rows' ? ['order', 'nodes'] : glued ? ['primes', 'glued'] : ['vectors'];
   const o = objectOf(value, place, ['method', 'revision', 'dimension', 'basis', ...counted, 'orbits']);
-  if (countOf(o['revision'], `${place}/revision`) !== (glued ? 2 : 1))
+  const revision = countOf(o['revision'], `${place}/revision`);
+  if (revision !== 1 && !(revision === 2 && (glued || method === 'rows')))
     throw new NotChecked(`revision ${String(o['revision'])} of the method ${method} is not known here`);
   const dimension =
     method === 'columns' && o['dimension'] === null ? null : countOf(o['dimension'], `${place}/dimension`);
@@ -138,7 +139,8 @@ function readTree(lattice: CheckedLattice, value: Json | undefined, place: strin
   if (method === 'rows') {
     const order = readOrder(lattice.rank, o['order'], `${place}/order`);
     const nodes = stringIntegerOf(o['nodes'], `${place}/nodes`);
-    return { place, method, dimension, gram: order.map((v) => order.map((w) => working[v]![w]!)), nodes, orbits };
+    const gram = order.map((v) => order.map((w) => working[v]![w]!));
+    return { place, method, dimension, gram, ...(revision === 2 ? { chosen: true } : {}), nodes, orbits };
   }
   const excess = dimension === null ? null : dimension - lattice.rank;
   if (method === 'frames' && (excess === null || excess < 0 || excess > (glued ? 1 : 2)))

@@ -1,6 +1,7 @@
 /** Trees as the checker enumerates them: what is asked, and runs over intervals. FORMAT.md, section 7. */
 import type { Matrix } from './arithmetic.ts';
 import { Enumeration } from './enumeration.ts';
+import { FewestRun, splitFewest } from './fewest-run.ts';
 import { GlueRun, splitGlued } from './glue-run.ts';
 import { splitVectors, VectorRun } from './vector-run.ts';
 
@@ -24,6 +25,8 @@ export interface CheckTree {
 export interface CheckRowsTree extends CheckTree {
   readonly method: 'rows';
   readonly dimension: number;
+  /** Revision 2: the row is chosen at each node, in this order where several have as few children. */
+  readonly chosen?: true;
 }
 
 function isRows(tree: CheckTree): tree is CheckRowsTree {
@@ -48,7 +51,10 @@ export interface CheckRun {
 }
 
 export function openCheckRun(tree: CheckTree, interval: CheckInterval, checkpoint?: string): CheckRun {
-  if (isRows(tree)) return new Enumeration(tree, interval, checkpoint);
+  if (isRows(tree))
+    return tree.chosen === true
+      ? new FewestRun(tree, interval, checkpoint)
+      : new Enumeration(tree, interval, checkpoint);
   return tree.primes === undefined
     ? new VectorRun(tree, interval, checkpoint)
     : new GlueRun(tree, interval, checkpoint);
@@ -61,6 +67,7 @@ const MOST_NODES_PER_PIECE = 256;
 /** At most `pieces` intervals that abut from the root to the end: cut at the nodes of one depth. */
 export function splitCheck(tree: CheckTree, pieces: number): CheckInterval[] {
   if (!isRows(tree)) return tree.primes === undefined ? splitVectors(tree, pieces) : splitGlued(tree, pieces);
+  if (tree.chosen === true) return splitFewest(tree, pieces);
   let cuts: (readonly number[])[] = [];
   for (let depth = 1; depth <= tree.gram.length && cuts.length < pieces * NODES_PER_PIECE; depth += 1) {
     const next = nodesAtDepth(tree, depth, pieces * MOST_NODES_PER_PIECE);

@@ -5,7 +5,7 @@
  */
 import { estimate, type Estimate } from './estimate.ts';
 import { METHODS, type Method } from './method.ts';
-import { columnsOf, framesStage, gluingOf, rankOf, whyNot } from './open-ladder.ts';
+import { canChooseRows, columnsOf, framesStage, gluingOf, rankOf, whyNot } from './open-ladder.ts';
 import type { Plan } from './plan.ts';
 import { openRun, type Advance, type Run } from './run.ts';
 import type { Stage } from './stages.ts';
@@ -29,6 +29,8 @@ const PROBES = 60;
 const PROBE_STEPS = 1_500_000;
 /** Gluing factors the determinant and reduces lattices: not worth it before the others had a try. */
 const GLUE_FROM_ROUND = 1;
+/** A choice of the row at each node costs 5 to 10 times as much for a node, and pays where it saves more: after the others had two tries. */
+const FEWEST_FROM_ROUND = 2;
 /** Columns answer `any` and large n; below this excess frames and rows are better. */
 const COLUMNS_FROM = 3;
 
@@ -45,7 +47,8 @@ export function chooseMethod(plan: Plan, stage: Stage, seed: number): ChosenStag
   if (stage.repeats !== undefined) return { stage, ended: null };
   if (plan.forced !== null) return { stage: forcedStage(plan, stage, plan.forced), ended: null };
   const trials = METHODS.map((method): Trial => ({ stage: { ...stage, method }, run: null }));
-  trials.splice(2, 0, { stage: { ...stage, method: 'frames', glue: true }, run: null });
+  trials.splice(1, 0, { stage: { ...stage, method: 'rows', fewest: true }, run: null });
+  trials.splice(3, 0, { stage: { ...stage, method: 'frames', glue: true }, run: null });
   if (rankOf(plan) > 0)
     for (const [round, units] of ROUNDS.entries()) {
       for (const trial of trials) {
@@ -63,9 +66,10 @@ export function chooseMethod(plan: Plan, stage: Stage, seed: number): ChosenStag
   return { stage: byEstimate(plan, trials, seed), ended: null };
 }
 
-function mayTry({ method, glue, dimension, whole }: Stage, plan: Plan, round: number): boolean {
+function mayTry({ method, glue, fewest, dimension, whole }: Stage, plan: Plan, round: number): boolean {
   const excess = dimension - rankOf(plan);
   if (method === 'columns' && !whole && excess < COLUMNS_FROM) return false;
+  if (fewest === true) return round >= FEWEST_FROM_ROUND && canChooseRows(plan);
   if (glue === true && (round < GLUE_FROM_ROUND || excess > 1 || whole)) return false;
   return whyNot(method, plan, dimension, whole) === null;
 }
@@ -81,7 +85,8 @@ function advance(plan: Plan, trial: Trial, units: number): Advance {
   return trial.run.advance(units);
 }
 
-function named({ method, glue }: Pick<Stage, 'method' | 'glue'>, plan: Plan): string {
+function named({ method, glue, fewest }: Stage, plan: Plan): string {
+  if (fewest === true) return 'Rows, the one with fewest children first at each node';
   if (method === 'rows') return `Rows, ${plan.why}`;
   return method === 'columns' ? 'Columns' : glue === true ? 'Frames by gluing' : 'Frames';
 }

@@ -3,6 +3,7 @@ import { fromPlanMatrix, type Plan } from './plan.ts';
 import { admissibleColumns, type AdmissibleColumns, type Kept } from './admissible-columns.ts';
 import { ColumnsLadder } from './columns-ladder.ts';
 import { dualForm, type DualForm } from './dual-form.ts';
+import { FewestLadder } from './fewest-ladder.ts';
 import { rootsFit } from './frame-list.ts';
 import { frameRoot, FramesLadder, type FrameRoot } from './frames-ladder.ts';
 import { GlueLadder } from './glue-ladder.ts';
@@ -106,6 +107,12 @@ export function countColumns(plan: Plan, stage: Stage): number {
   return columnsOf(plan, stage)?.admissible ?? 0;
 }
 
+/** Can the next row be chosen at each node? It is done in doubles, and costs the rank at each of them. */
+export function canChooseRows(plan: Plan): boolean {
+  const at = preparedFor(plan);
+  return rankOf(plan) > 2 && rankOf(plan) <= MAX_DUAL_RANK && (at.rows ??= workingForm(plan)).small;
+}
+
 /** Why a method cannot list the embeddings in Z^n, in words, or null if it can. */
 export function whyNot(method: Method, plan: Plan, dimension: number, whole: boolean): string | null {
   if (method === 'rows') return null;
@@ -121,8 +128,10 @@ export function whyNot(method: Method, plan: Plan, dimension: number, whole: boo
 
 export function openLadder(plan: Plan, stage: Stage): Ladder {
   const at = preparedFor(plan);
-  if (stage.method === 'rows' || rankOf(plan) === 0)
-    return openRowLadder((at.rows ??= workingForm(plan)), stage.dimension);
+  if (stage.method === 'rows' || rankOf(plan) === 0) {
+    const form = (at.rows ??= workingForm(plan));
+    return stage.fewest === true ? new FewestLadder(form, stage.dimension) : openRowLadder(form, stage.dimension);
+  }
   const excess = stage.dimension - rankOf(plan);
   if (stage.glue === true) return new GlueLadder(gluingOf(plan, stage.dimension)!, stage.dimension);
   const columns = columnsOf(plan, stage);

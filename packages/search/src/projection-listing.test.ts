@@ -1,6 +1,7 @@
 /** The listing by the projection bound against the plain one: the same nodes, the same orbits, resumable anywhere. */
 import { describe, expect, it } from 'vitest';
 import { determinant, multiply, transpose, type BigMatrix } from '@palmette/exact';
+import { FewestLadder } from './fewest-ladder.ts';
 import { openRowLadder, type Ladder } from './ladder.ts';
 import { LISTED } from './listing.ts';
 import { smallestResidual } from './order.ts';
@@ -99,6 +100,19 @@ describe('the projection bound', () => {
       const plain = walk(() => openRowLadder({ ...form, projection: null }, n), next, 0);
       const projected = walk(() => openRowLadder(form, n), next, 0);
       expect({ gram, n, ...projected }).toEqual({ gram, n, ...plain });
+    }
+  });
+
+  it('rows chosen at each node list the same orbits, left and entered again too, 400 random forms', () => {
+    const next = sequence(64);
+    for (let k = 0; k < 400; k += 1) {
+      const gram = randomForm(next);
+      const n = gram.length + next(3);
+      const form = formOf(gram);
+      const { leaves } = walk(() => openRowLadder(form, n), next, 0);
+      const whole = walk(() => new FewestLadder(form, n), next, 0);
+      expect({ gram, n, leaves: whole.leaves }).toEqual({ gram, n, leaves });
+      expect({ gram, n, ...walk(() => new FewestLadder(form, n), next, 2) }).toEqual({ gram, n, ...whole });
     }
   });
 

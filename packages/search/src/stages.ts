@@ -21,6 +21,8 @@ export interface Stage {
   readonly method: Method;
   /** Frames by gluing, not from a list of columns. */
   readonly glue?: true;
+  /** Rows: the next one is chosen at each node, not taken from the plan's order. */
+  readonly fewest?: true;
   /** One sentence: what was chosen and why. */
   readonly why: string;
   /** Repeats an earlier stage by another method: its number. */

@@ -153,7 +153,7 @@ function treeOf(u: Understood, plan: Plan, result: StageResult): Tree {
   if (result.method === 'rows')
     return {
       method: 'rows',
-      revision: 1,
+      revision: result.fewest === true ? 2 : 1,
       dimension: result.dimension,
       basis,
       order: plan.order,
