@@ -75,12 +75,10 @@ function rootsModuloPrime(a: bigint, p: bigint): bigint[] {
   const r = ((a % p) + p) % p;
   if (p === 2n) return [r % 2n];
   if (power(r, (p - 1n) / 2n, p) !== 1n) return [];
-  let b = 0n;
-  let w2 = 0n;
-  do {
-    b += 1n;
-    w2 = (((b * b - r) % p) + p) % p;
-  } while (w2 !== 0n && power(w2, (p - 1n) / 2n, p) === 1n);
+  const less = (b: bigint) => (((b * b - r) % p) + p) % p;
+  let b = 1n;
+  while (less(b) !== 0n && power(less(b), (p - 1n) / 2n, p) === 1n) b += 1n;
+  const w2 = less(b);
   if (w2 === 0n) return [b, p - b];
   let [x, y, u, v] = [1n, 0n, b, 1n];
   for (let e = (p + 1n) / 2n; e > 0n; e >>= 1n) {

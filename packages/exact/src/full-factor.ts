@@ -51,10 +51,10 @@ function isPrime(n: bigint): boolean {
 /** A factor of a composite n, or null. */
 function rho(n: bigint): bigint | null {
   for (let c = 1n, steps = 0; steps < RHO_STEPS; c += 1n) {
-    let [x, y, product] = [2n, 2n, 1n];
+    let [y, product] = [2n, 1n];
     let [saved, batch] = [2n, 1];
     for (;;) {
-      x = y;
+      const x = y;
       for (let i = 0; i < batch; i += 1) y = (y * y + c) % n;
       let g = 1n;
       for (let k = 0; k < batch && g === 1n; k += 128) {
