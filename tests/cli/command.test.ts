@@ -6,6 +6,7 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { describe, expect, it } from 'vitest';
+import { answerAlone } from '@palmette/threads';
 
 const root = fileURLToPath(new URL('../..', import.meta.url));
 const folder = mkdtempSync(join(tmpdir(), 'palmette-cli-'));
@@ -16,10 +17,14 @@ interface Ran {
   readonly err: string;
 }
 
-function palmette(args: readonly string[], input: string | Uint8Array = ''): Promise<Ran> {
+function palmette(
+  args: readonly string[],
+  input: string | Uint8Array = '',
+  settings: Readonly<Record<string, string>> = {},
+): Promise<Ran> {
   return new Promise((resolve) => {
     const child = spawn(process.execPath, [join(root, 'docker-free-scripts/palmette.mjs'), ...args], {
-      env: { ...process.env, INIT_CWD: folder },
+      env: { ...process.env, INIT_CWD: folder, ...settings },
     });
     const out: Buffer[] = [];
     const err: Buffer[] = [];
@@ -152,6 +157,37 @@ describe('palmette answer', () => {
     expect(ran.code).toBe(3);
     expect(claimOf(ran.out.split('\n')[0]!)).toMatchObject({ verdict: 'open', ground: null, complete: false });
     expect((await palmette(['check', '-'], ran.out)).code).toBe(0);
+  });
+
+  // the columns of 30·I_5 and what is left of them at each depth are about 1.6 MB by the engine's count
+  it.each([[], ['--lines']])(
+    'ends with 3 and says the figure when a thread may not hold more memory %j',
+    async (...more) => {
+      const rows = Array.from({ length: 5 }, (_, i) => Array.from({ length: 5 }, (_, j) => (i === j ? 30 : 0)));
+      const asked = question({ kind: 'matrix', rows }, { dimension: 12 }, { method: 'columns' });
+      const ran = await palmette(['answer', ...more, '-'], asked, { MEMORY_MIB_PER_THREAD: '1' });
+      expect(ran.code).toBe(3);
+      expect(ran.err).toMatch(
+        /open: a thread's bound of memory is used up \(2 MiB counted\); nothing can be concluded\n$/,
+      );
+      expect(claimOf(ran.out.split('\n')[0]!)).toMatchObject({ verdict: 'open', ground: null, complete: false });
+      expect((await palmette(['check', '-'], ran.out)).code).toBe(0);
+    },
+  );
+
+  it('writes a list of more than 10,000 in chunks, with the bytes that it has when it is held whole', async () => {
+    const rows = Array.from({ length: 4 }, (_, i) => Array.from({ length: 4 }, (_, j) => (i === j ? 6 : 0)));
+    const asked = question({ kind: 'matrix', rows }, { dimension: 16 }, { tests: ['pair', 'complement'] });
+    const alone = answerAlone(asked);
+    if (alone.kind === 'refused') throw new Error(alone.message);
+    const whole = Buffer.concat(alone.certificate).toString();
+    const ran = await palmette(['answer', '-'], asked);
+    expect({ ...ran, out: ran.out === whole }).toEqual({ code: 0, out: true, err: '' });
+    const head = JSON.parse(whole.split('\n', 1)[0]!) as {
+      embeddings: { chunks: { records: number; bytes: number }[] };
+    };
+    expect(head.embeddings.chunks.length).toBeGreaterThan(3);
+    expect(Math.max(...head.embeddings.chunks.map((chunk) => chunk.bytes))).toBeLessThanOrEqual(1024 * 1024);
   });
 
   it('refuses with one line: path, expectation, finding', async () => {

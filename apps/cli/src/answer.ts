@@ -22,7 +22,7 @@ async function answerOne(file: string): Promise<number> {
     process.stderr.write(`${refusalLine(end)}\n`);
     return EXIT.refused;
   }
-  if (end.reason !== undefined) process.stderr.write(`open: ${end.reason}; nothing can be concluded\n`);
+  if (end.reason !== undefined) process.stderr.write(`${openLine(end.reason)}\n`);
   return end.settled ? EXIT.settled : EXIT.open;
 }
 
@@ -34,6 +34,8 @@ function memoryBytes(): number {
     throw new UsageError(`MEMORY_MIB_PER_THREAD: expected a number above 0, found ${JSON.stringify(text)}`);
   return mebibytes * 1024 * 1024;
 }
+
+const openLine = (reason: string) => `open: ${reason}; nothing can be concluded`;
 
 function refusalLine(refusal: Refused): string {
   const place = refusal.path === undefined || refusal.path === '' ? '' : `${refusal.path}: `;
@@ -47,20 +49,24 @@ const IN_FLIGHT = 16;
 async function answerLines(file: string): Promise<number> {
   const threads = openThreads({ threads: availableParallelism() });
   const flying: Promise<AnswerEnd>[] = [];
+  const bound = memoryBytes();
   let open = false;
+  let landed = 0;
   const land = async () => {
     const end = await flying.shift()!;
+    landed += 1;
     if (end.kind === 'refused') {
       const { code, message, path } = end;
       await write(`${JSON.stringify({ error: { code, message, ...(path === undefined ? {} : { path }) } })}\n`);
       return;
     }
     open ||= !end.settled;
+    if (end.reason !== undefined) process.stderr.write(`line ${landed}: ${openLine(end.reason)}\n`);
     for (const bytes of end.certificate) await write(bytes);
   };
   try {
     for await (const document of readLines(file)) {
-      flying.push(threads.run({ kind: 'answer', document, oneLine: true }).end);
+      flying.push(threads.run({ kind: 'answer', document, oneLine: true, memoryBytes: bound }).end);
       if (flying.length >= IN_FLIGHT * threads.size) await land();
     }
     while (flying.length > 0) await land();

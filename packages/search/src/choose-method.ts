@@ -17,7 +17,7 @@ export class MethodCannot extends Error {
 
 export interface ChosenStage {
   readonly stage: Stage;
-  /** The run that ended while the methods were tried. */
+  /** The run that ended while the methods were tried, with what it found; null too where it found too much to be held. */
   readonly ended: { readonly run: Run; readonly end: Exclude<Advance, 'more'> } | null;
 }
 
@@ -33,6 +33,11 @@ const GLUE_FROM_ROUND = 1;
 const FEWEST_FROM_ROUND = 2;
 /** Columns answer `any` and large n; below this excess frames and rows are better. */
 const COLUMNS_FROM = 3;
+
+/** Orbits that a trial holds; one that finds more drops them all, and if it ends, its method lists them again where lists stream. */
+const HELD_ORBITS = 20_000n;
+/** Units between two looks at what a trial holds. */
+const SLICE_UNITS = 2_000;
 
 interface Trial {
   readonly stage: Stage;
@@ -60,7 +65,10 @@ export function chooseMethod(plan: Plan, stage: Stage, seed: number): ChosenStag
           round === 0 && method === 'rows'
             ? `Rows, ${plan.why}: ${trial.run!.nodes} nodes.`
             : `${named(trial.stage, plan)}: ended after ${trial.run!.nodes} nodes${others(trials, trial)}.`;
-        return { stage: { ...trial.stage, why }, ended: { run: trial.run!, end } };
+        return {
+          stage: { ...trial.stage, why },
+          ended: trial.run!.orbits > HELD_ORBITS ? null : { run: trial.run!, end },
+        };
       }
     }
   return { stage: byEstimate(plan, trials, seed), ended: null };
@@ -82,7 +90,16 @@ function advance(plan: Plan, trial: Trial, units: number): Advance {
       return 'more';
     trial.run = openRun(plan, trial.stage, { from: [], to: null });
   }
-  return trial.run.advance(units);
+  return advanceHolding(trial.run, units);
+}
+
+function advanceHolding(run: Run, units: number): Advance {
+  for (let left = units; left > 0; left -= SLICE_UNITS) {
+    const end = run.advance(Math.min(left, SLICE_UNITS));
+    if (run.orbits > HELD_ORBITS) run.takeFound();
+    if (end !== 'more') return end;
+  }
+  return 'more';
 }
 
 function named({ method, glue, fewest }: Stage, plan: Plan): string {

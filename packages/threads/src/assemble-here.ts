@@ -5,14 +5,13 @@
 import type { WrittenFile } from '@palmette/certificate';
 import type { Plan } from '@palmette/search';
 import { CheckFailed } from './answer-alone.ts';
-import { certifyOpenInChunks } from './certify.ts';
-import { unpackFound } from './found-chunks.ts';
+import { certifyOpenInChunks, listedOpen } from './certify.ts';
 import type { AssembleJob, CheckerWord, StageAhead } from './jobs.ts';
 import type { Threads } from './pool.ts';
 import { PACE_HERE, runCover } from './run-cover.ts';
 import { runServed } from './serve.ts';
 import { Spool } from './spool.ts';
-import { fixedDimension, sha256, type Understood } from './understand.ts';
+import { sha256, type Understood } from './understand.ts';
 
 /** Trees up to this many nodes are checked by the assembling thread itself. */
 const WHOLE_CHECK_NODES = 200_000;
@@ -28,14 +27,11 @@ export function accept(word: CheckerWord): void {
 /** Reads a piece again from where it was put aside. */
 export type Piece = () => Uint8Array;
 
-/** What a search that was left open may list: of a least n nothing, because which n it is nobody knows yet. */
 export async function writeOpen(u: Understood, plan: Plan, found: readonly Piece[], write: Write): Promise<void> {
-  const dimension = fixedDimension(u);
-  const listed = dimension === null && !('any' in u.question.target) ? [] : found;
   const spool = new Spool();
   try {
     const chunks: Piece[] = [];
-    const open = { dimension, plan, found: unpackFound(read(listed)) };
+    const open = listedOpen(u, plan, read(found));
     const file = certifyOpenInChunks(u, open, (chunk) => chunks.push(kept(spool, chunk)));
     for (const piece of read(inOrder(file, chunks))) await write(piece);
   } finally {

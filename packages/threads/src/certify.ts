@@ -22,9 +22,10 @@ import {
   type Plan,
   type StageResult,
 } from '@palmette/search';
+import { unpackFound } from './found-chunks.ts';
 import type { SettledFacts } from './jobs.ts';
 import { ListWriter, type KeepChunk } from './list-writer.ts';
-import { sha256, type Understood } from './understand.ts';
+import { fixedDimension, sha256, type Understood } from './understand.ts';
 
 export interface Certified {
   readonly facts: SettledFacts;
@@ -39,13 +40,20 @@ export interface OpenParts {
   readonly found: Iterable<FoundOrbit>;
 }
 
+/** What a search that was left open may list: of a least n nothing, because nobody knows yet which n it is. */
+export function listedOpen(u: Understood, plan: Plan, chunks: Iterable<Uint8Array>): OpenParts {
+  const dimension = fixedDimension(u);
+  const listed = dimension !== null || 'any' in u.question.target;
+  return { dimension, plan, found: listed ? unpackFound(chunks) : [] };
+}
+
 /** A settled search's certificate, held whole. */
 export function certify(
   u: Understood,
   plan: Plan | null,
   conclusion: Conclusion,
   results: readonly StageResult[],
-  found: readonly FoundOrbit[],
+  found: Iterable<FoundOrbit>,
 ): Certified {
   const chunks: Uint8Array[] = [];
   const { facts, ...file } = certifyInChunks(u, plan, conclusion, results, found, (chunk) => chunks.push(chunk));

@@ -25,6 +25,8 @@ import { fixedDimension, understand, type Understood } from './understand.ts';
 const SLICE_NODES = 2_000;
 /** Listing steps above which a search becomes parcels even if it was quick: its check is to run in parcels too. */
 const QUICK_STEPS = 2_000_000;
+/** Orbits above which it does: such a list is not held whole. */
+const QUICK_ORBITS = 20_000n;
 /** Pieces of a first cover: enough that a few long ones can be cut again, few enough to draw. */
 const COVER_PARCELS = 48;
 const ESTIMATE_PROBES = 200;
@@ -155,10 +157,11 @@ function runQuickly(
     const { stage, ended } = chooseMethod(plan!, step.stage, u.seed);
     const run = ended?.run ?? openRun(plan!, stage, { from: [], to: null });
     let end = ended?.end ?? run.advance(SLICE_NODES);
-    while (end === 'more') {
+    while (end === 'more' && run.orbits <= QUICK_ORBITS) {
       if (meter.ms > quickCpuMs || run.steps > QUICK_STEPS) return { kind: 'long', stage, results };
       end = run.advance(SLICE_NODES);
     }
+    if (run.orbits > QUICK_ORBITS) return { kind: 'long', stage, results };
     const orbits = run.takeFound();
     results.push(stageResult(stage, run, end === 'done', plan!.secondOpinion ? orbits : null));
     found.set(stage.no, orbits);

@@ -88,6 +88,8 @@ export interface AnswerJob {
   readonly document: string;
   /** The certificate is one line whatever its size. */
   readonly oneLine: boolean;
+  /** Bound of the search's own memory. */
+  readonly memoryBytes: number;
 }
 
 export type Job = ChooseJob | ListJob | AssembleJob | OpenJob | CheckJob | ConcludeJob | AnswerJob;

@@ -3,6 +3,7 @@
  * thread is idle. The order in which pieces end decides nothing: what they found is joined in address order.
  */
 import type { CheckEnd, CheckJob, CheckpointMessage, Interval, ListEnd, ListJob } from './jobs.ts';
+import { BUDGET_USED_UP, memoryUsedUp } from './left-open.ts';
 import type { RunningJob, Threads } from './pool.ts';
 import { runServed, type Shelf } from './serve.ts';
 import type { Place, Spool } from './spool.ts';
@@ -68,7 +69,7 @@ export async function runCover(options: CoverOptions): Promise<CoverEnd> {
     h.orbits += message.orbits;
     h.chunks.push(...message.chunks.map((c) => options.spool.keep(c.raw)));
     cpuMs += message.cpuMs;
-    if (cpuMs > options.limitCpuMs) finishWith('spent', 'the budget of CPU time is used up');
+    if (cpuMs > options.limitCpuMs) finishWith('spent', BUDGET_USED_UP);
   };
   const askForCut = () => held.find((h) => h.state === 'running')?.job?.cut();
 
@@ -104,11 +105,7 @@ export async function runCover(options: CoverOptions): Promise<CoverEnd> {
       take(next, done.last);
       next.state = done.kind === 'done' || done.kind === 'found' ? 'done' : 'waiting';
       if (done.kind === 'found') finishWith('found');
-      if (done.kind === 'memory')
-        finishWith(
-          'spent',
-          `a thread's bound of memory is used up (${Math.ceil(done.memoryBytes / 1024 / 1024)} MiB counted)`,
-        );
+      if (done.kind === 'memory') finishWith('spent', memoryUsedUp(done.memoryBytes));
     }
   }
   await Promise.all(Array.from({ length: options.threads.size }, work));
