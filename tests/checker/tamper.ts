@@ -124,7 +124,50 @@ function edits(certificate: { [key: string]: Json }): [string, Edit][] {
         (c) => ((at(c, 'evidence', 'list')['order'] as Json[])[0] = (tree['order'] as Json[])[1]!),
       ]);
   }
-  return out;
+  return [...out, ...evidenceEdits(certificate)];
+}
+
+/** What a tree of any method or a ground says about its search, each made false. */
+function evidenceEdits(certificate: { [key: string]: Json }): [string, Edit][] {
+  const evidence = at(certificate, 'evidence');
+  const places: (string | number)[][] = [
+    ['evidence', 'list'],
+    ['evidence', 'second'],
+    ...(evidence['exclusions'] as Json[]).flatMap((_, i) => [
+      ['evidence', 'exclusions', i, 'tree'],
+      ['evidence', 'exclusions', i],
+    ]),
+  ];
+  return places.flatMap((place) => {
+    const there = place.reduce<Json | undefined>(
+      (v, step) => (v as { [key: string]: Json } | null)?.[step],
+      certificate,
+    );
+    if (there === null || there === undefined) return [];
+    const member = there as { [key: string]: Json };
+    const name = place.slice(1).join('/');
+    const out: [string, Edit][] = ['nodes', 'vectors', 'glued', 'orbits']
+      .filter((key) => typeof member[key] === 'string')
+      .map((key) => [`${name}: ${key} one more`, (c) => (at(c, ...place)[key] = plusOne(member[key]))]);
+    if (typeof member['spanned'] === 'number')
+      out.push([`${name}: spanned one more`, (c) => (at(c, ...place)['spanned'] = (member['spanned'] as number) + 1)]);
+    // Hilbert symbols need one failing prime only, gluing needs all primes of the determinant
+    if (member['glued'] !== undefined) {
+      const primes = member['primes'] as string[];
+      out.push([`${name}: a prime left out`, (c) => (at(c, ...place)['primes'] = primes.slice(1))]);
+      out.push([`${name}: a prime too many`, (c) => (at(c, ...place)['primes'] = [...primes, '1000003'])]);
+      out.push([`${name}: no prime`, (c) => (at(c, ...place)['primes'] = [...primes.slice(0, -1), '1000001'])]);
+    }
+    if (member['method'] !== undefined) {
+      out.push([
+        `${name}: another method`,
+        (c) => (at(c, ...place)['method'] = member['method'] === 'rows' ? 'frames' : 'rows'),
+      ]);
+      if (typeof member['dimension'] === 'number')
+        out.push([`${name}: narrower`, (c) => (at(c, ...place)['dimension'] = (member['dimension'] as number) - 1)]);
+    }
+    return out;
+  });
 }
 
 /** Every false variant of a certificate in its one-object form; unknown versions and damaged files are apart. */

@@ -1,8 +1,8 @@
 /** Three methods, one answer: rows, frames and columns list the same set of orbits; scrambling the basis never changes it. */
 import { describe, expect, it } from 'vitest';
 import { determinant, multiply, transpose, type BigMatrix } from '@palmette/exact';
-import { buildLattice, type Lattice, type Source } from '@palmette/lattice';
-import type { Method } from '@palmette/search';
+import { buildLattice, reducedBasis, type Lattice, type Source } from '@palmette/lattice';
+import { choosePlan, MethodsDisagree, nextStep, type Method } from '@palmette/search';
 import { askLattice, factorial, matrix, typed, type Found, type Target } from './ask.ts';
 
 /** Park–Miller with a fixed seed. */
@@ -142,6 +142,34 @@ describe('three methods, one answer', () => {
       agree(lattice, { any: true }, k);
       agree(lattice, { least: {} }, k);
     }
+  });
+
+  it('a disagreement is an error that names both results', () => {
+    const lattice = buildLattice(typed('18/5'));
+    const plan = choosePlan(
+      { gram: reducedBasis(lattice).gram, target: { dimension: 4 }, scope: 'all', secondOpinion: true, seed: 1 },
+      () => null,
+    );
+    const first = {
+      no: 0,
+      dimension: 4,
+      purpose: 'all',
+      whole: false,
+      method: 'rows',
+      why: '',
+      complete: true,
+    } as const;
+    const results = [{ ...first, nodes: '9', orbits: '2', set: 'a' }];
+    const step = nextStep(plan, results, () => null);
+    if (!('stage' in step)) throw new Error('expected a second stage');
+    expect(step.stage).toMatchObject({ method: 'frames', repeats: 0, dimension: 4 });
+    const second = { ...step.stage, complete: true, nodes: '3' };
+    expect(() => nextStep(plan, [...results, { ...second, orbits: '1', set: 'a' }], () => null)).toThrow(
+      MethodsDisagree,
+    );
+    expect(() => nextStep(plan, [...results, { ...second, orbits: '2', set: 'b' }], () => null)).toThrow(
+      /two methods disagree at n = 4: rows list 2 orbits .*, frames list 2 orbits/,
+    );
   });
 
   it('a second opinion agrees and is recorded', () => {
