@@ -93,18 +93,21 @@ function printRatios(
         if (best < RATIO_FROM_SECONDS) return [];
         // a peer that was stopped may be the best: then the ratio is a lower bound
         const open = peers.some((r) => !settles(r) && r.limit <= best);
-        if (!settles(ours)) return open ? [] : [`< ${(best / ours.limit).toPrecision(2)}`];
-        return [`${open ? '> ' : ''}${(best / Math.max(0.01, net(ours, startUp))).toPrecision(2)}`];
+        if (!settles(ours)) return open ? [] : [`< ${rounded(best / ours.limit)}`];
+        return [`${open ? '> ' : ''}${rounded(best / Math.max(0.01, net(ours, startUp)))}`];
       });
+      const none = group.some((i) => of(i).some((r) => r.solver !== OURS)) ? 'none needs 1 s' : 'no peer measured';
       const count = (test: (r: PeerRecord) => boolean) => group.filter((i) => of(i).some(test)).length;
       console.log(
-        `| ${kind} | ${excess} | ${group.length} | ${count((r) => r.solver === OURS && settles(r))} | ${count((r) => r.solver !== OURS && settles(r))} | ${ratios.join(', ') || 'no peer needs 1 s'} |`,
+        `| ${kind} | ${excess} | ${group.length} | ${count((r) => r.solver === OURS && settles(r))} | ${count((r) => r.solver !== OURS && settles(r))} | ${ratios.join(', ') || none} |`,
       );
     }
   console.log(
     '\n"> x": the best peer was stopped at its limit, x is the limit over ours. A time below 0.01 s counts as 0.01 s.\n',
   );
 }
+
+const rounded = (ratio: number) => String(Number(ratio.toPrecision(2)));
 
 function printCertificates(instances: readonly Instance[], of: (instance: Instance) => PeerRecord[]): void {
   console.log(
