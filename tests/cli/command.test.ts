@@ -135,6 +135,32 @@ describe('palmette answer', () => {
     expect({ name: _name, code: checked.code, line: checked.out }).toMatchObject({ code: 0 });
   });
 
+  it('forces a method and asks for a second opinion; refuses a method that cannot answer', async () => {
+    const forced = await palmette(
+      ['answer', '--method', 'columns', '--second-opinion', '-'],
+      question(p357, { excess: 1 }),
+    );
+    expect(forced.code).toBe(0);
+    const { question: asked, evidence } = JSON.parse(forced.out) as {
+      question: object;
+      evidence: { list: { method: string }; second: { method: string } };
+    };
+    expect(asked).toMatchObject({ method: 'columns', secondOpinion: true });
+    expect([evidence.list.method, evidence.second.method].sort()).toEqual(['columns', 'rows']);
+    const checked = await palmette(['check', '-'], forced.out);
+    expect(checked.out).toMatch(
+      /VERIFIED .*two methods agree: rows and columns|VERIFIED .*two methods agree: columns and rows/,
+    );
+    const cannot = await palmette(['answer', '--method', 'frames', '-'], question(p357, { excess: 5 }));
+    expect([cannot.code, cannot.out]).toEqual([2, '']);
+    expect(cannot.err).toMatch(/^Refused: \/method: .*frames need n = rank, rank \+ 1 or rank \+ 2/);
+    const unknown = await palmette(['answer', '--method', 'guess', '-'], question(p357));
+    expect([unknown.code, unknown.err.split('\n')[0]]).toEqual([
+      2,
+      '--method: expected rows, columns, frames, found guess',
+    ]);
+  });
+
   it('gives one witness at scope one', async () => {
     const ran = await palmette(['answer', '-'], question(p357, { excess: 2 }, { scope: 'one' }));
     expect(claimOf(ran.out)).toMatchObject({ verdict: 'embeds', ground: 'embedding', complete: false, dimension: 10 });

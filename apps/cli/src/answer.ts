@@ -2,21 +2,19 @@
 import { availableParallelism } from 'node:os';
 import { once } from 'node:events';
 import { answerOnAllCores, openThreads, type AnswerEnd, type Refused } from '@palmette/threads';
+import { answerOptions, withOptions, type AnswerOptions } from './answer-options.ts';
 import { fileArgument, readAll, readLines, UsageError } from './read-input.ts';
 
 const EXIT = { settled: 0, open: 3, refused: 2 } as const;
 
 export async function answer(args: readonly string[]): Promise<number> {
-  const lines = args.includes('--lines');
-  const file = fileArgument(
-    args.filter((a) => a !== '--lines'),
-    'answer',
-  );
-  return lines ? answerLines(file) : answerOne(file);
+  const options = answerOptions(args);
+  const file = fileArgument(options.rest, 'answer');
+  return options.lines ? answerLines(file, options) : answerOne(file, options);
 }
 
-async function answerOne(file: string): Promise<number> {
-  const document = (await readAll(file)).toString('utf8');
+async function answerOne(file: string, options: AnswerOptions): Promise<number> {
+  const document = withOptions((await readAll(file)).toString('utf8'), options);
   const end = await answerOnAllCores(document, { threads: availableParallelism(), memoryBytes: memoryBytes(), write });
   if (end.kind === 'refused') {
     process.stderr.write(`${refusalLine(end)}\n`);
@@ -46,7 +44,7 @@ function refusalLine(refusal: Refused): string {
 const IN_FLIGHT = 16;
 
 /** Answers come out in the order of the questions; a refused line gets an error and the rest goes on. */
-async function answerLines(file: string): Promise<number> {
+async function answerLines(file: string, options: AnswerOptions): Promise<number> {
   const threads = openThreads({ threads: availableParallelism() });
   const flying: Promise<AnswerEnd>[] = [];
   const bound = memoryBytes();
@@ -65,7 +63,8 @@ async function answerLines(file: string): Promise<number> {
     for (const bytes of end.certificate) await write(bytes);
   };
   try {
-    for await (const document of readLines(file)) {
+    for await (const line of readLines(file)) {
+      const document = withOptions(line, options);
       flying.push(threads.run({ kind: 'answer', document, oneLine: true, memoryBytes: bound }).end);
       if (flying.length >= IN_FLIGHT * threads.size) await land();
     }

@@ -5,6 +5,8 @@ import { UsageError } from './read-input.ts';
 
 const USAGE = `palmette answer FILE|-           question document in, certificate out
 palmette answer --lines FILE|-   one question a line in, one compact certificate a line out, in order
+   --method rows|columns|frames  forces a method; left out, the engine chooses
+   --second-opinion              answers by two methods and says whether they agree
 palmette check FILE|-            checks a certificate; the last line is the outcome
 
 FILE may be gzip; - is standard input.
