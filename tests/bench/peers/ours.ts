@@ -92,5 +92,6 @@ interface Tree {
 function methodOf(evidence: { list: Tree | null; exclusions: { tree?: Tree }[] }): string {
   const tree = evidence.list ?? evidence.exclusions.at(-1)?.tree ?? null;
   if (tree === null) return '';
-  return `${tree.method}, ${tree.nodes === undefined ? `${tree.vectors} vectors` : `${tree.nodes} nodes`}`;
+  if (tree.nodes !== undefined) return `${tree.method}, ${tree.nodes} nodes`;
+  return tree.vectors === undefined ? `${tree.method} by gluing` : `${tree.method}, ${tree.vectors} vectors`;
 }

@@ -59,7 +59,7 @@ function printTimes(
     const records = of(instance);
     const by = (solver: string) => records.find((r) => r.solver === solver);
     const settled = records.find((r) => r.outcome === 'embeds' || r.outcome === 'excluded');
-    const orbits = settled?.orbits === undefined ? '' : `, ${settled.orbits} orbits`;
+    const orbits = settled?.orbits ? `, ${settled.orbits} orbits` : '';
     const cells = solvers.map((solver) => (by(solver) === undefined ? '' : show(by(solver)!)));
     const { ground = '', method = '' } = by(OURS)?.figures ?? {};
     console.log(
