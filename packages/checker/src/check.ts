@@ -33,7 +33,10 @@ export interface TreeCount {
   readonly orbits: string;
 }
 
-export function openCheck(bytes: Uint8Array): { readonly outcome: Outcome } | { readonly work: CheckWork } {
+/** @param bytes uncompressed: all of them, or pieces in order, cut anywhere, of which one is held at a time */
+export function openCheck(
+  bytes: Uint8Array | Iterable<Uint8Array>,
+): { readonly outcome: Outcome } | { readonly work: CheckWork } {
   try {
     return { work: readWork(bytes) };
   } catch (error) {
@@ -62,8 +65,8 @@ const SLICE_NODES = 20_000;
 /** A node of a tree of columns costs as much as its list is long. */
 const SLICE_VECTORS = 16;
 
-/** The whole check in one go. Bytes are uncompressed. */
-export function check(bytes: Uint8Array, options: CheckOptions = {}): Outcome {
+/** The whole check in one go. Bytes as for `openCheck`. */
+export function check(bytes: Uint8Array | Iterable<Uint8Array>, options: CheckOptions = {}): Outcome {
   const opened = openCheck(bytes);
   if ('outcome' in opened) return opened.outcome;
   try {
@@ -106,7 +109,7 @@ function outcomeOf(error: unknown): Outcome {
   throw error;
 }
 
-function readWork(bytes: Uint8Array): CheckWork {
+function readWork(bytes: Uint8Array | Iterable<Uint8Array>): CheckWork {
   const file = openFile(bytes);
   const question = readQuestion(file.head['question']);
   const lattice = checkLattice(question['source']!, file.head['lattice']);

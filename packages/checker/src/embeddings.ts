@@ -1,6 +1,7 @@
 /** The list: each embedding multiplied again, told apart from the others up to symmetry, its orbit counted. FORMAT.md, section 6. */
 import { times, turned, type Matrix } from './arithmetic.ts';
 import type { CertificateFile } from './file.ts';
+import { KeySet } from './key-set.ts';
 import { readIntegerMatrix, type CheckedLattice } from './lattice.ts';
 import { countOf, objectOf, Rejection, stringIntegerOf, type Json } from './reading.ts';
 import { sha256Hex } from './sha256.ts';
@@ -17,7 +18,7 @@ const DENSE_ENTRIES = 250_000;
 /** @param dimension n, or null for target any: each embedding in its own width, without zero columns */
 export function checkEmbeddings(file: CertificateFile, lattice: CheckedLattice, dimension: number | null): CheckedList {
   const size = lattice.gram.length;
-  const seen = new Set<string>();
+  const seen = new KeySet();
   const unverifiedTests = new Set<string>();
   let [orbits, total] = [0n, 0n];
   for (const { place, value } of file.embeddings()) {
@@ -26,8 +27,7 @@ export function checkEmbeddings(file: CertificateFile, lattice: CheckedLattice, 
     checkProduct(turned(columns, size), lattice.gram, place);
     const normal = columns.map(normalColumn).sort();
     const key = sha256Hex(new TextEncoder().encode(normal.join('|')));
-    if (seen.has(key)) throw new Rejection(place, 'the same orbit stands in the list before');
-    seen.add(key);
+    if (!seen.add(key)) throw new Rejection(place, 'the same orbit stands in the list before');
     const orbitSize = countOrbit(normal, zeros);
     if (stringIntegerOf(o['orbitSize'], `${place}/orbitSize`) !== orbitSize)
       throw new Rejection(`${place}/orbitSize`, `expected ${orbitSize}`);

@@ -10,23 +10,28 @@ import {
   type Json,
   type JsonObject,
 } from './reading.ts';
+import { PieceReader } from './piece-reader.ts';
 import { sha256Hex } from './sha256.ts';
 
 export interface CertificateFile {
   readonly head: JsonObject;
-  /** Each embedding with its place, in order; read when it is asked for. */
+  /** Each embedding with its place, in order; read when it is asked for, once. */
   readonly embeddings: () => Iterable<{ readonly place: string; readonly value: Json }>;
 }
 
 const FORMAT = 'palmette.certificate/1';
 const MEMBERS = ['format', 'question', 'lattice', 'claim', 'embeddings', 'tests', 'evidence', 'end'];
-const LINE_FEED = 10;
+/** FORMAT.md, section 9. */
+const CHUNK_BYTES = 1024 * 1024;
 
-export function openFile(bytes: Uint8Array): CertificateFile {
-  if (bytes.length === 0) throw new Rejection('/', 'the file is empty');
-  const firstEnd = bytes.indexOf(LINE_FEED);
-  const headBytes = firstEnd < 0 ? bytes : bytes.subarray(0, firstEnd);
-  const rest = firstEnd < 0 ? new Uint8Array(0) : bytes.subarray(firstEnd + 1);
+/**
+ * Reads the head; of the chunks of a large list one is held at a time, while the embeddings are walked through (once).
+ * @param source all bytes, or pieces of them in order, cut anywhere
+ */
+export function openFile(source: Uint8Array | Iterable<Uint8Array>): CertificateFile {
+  const reader = new PieceReader(source);
+  const headBytes = reader.line();
+  if (headBytes.length === 0) throw new Rejection('/', 'the file is empty');
   const text = decodeText(headBytes, '/');
   const value = readJson(text, '/');
   const format = (value as { format?: Json } | null)?.format;
@@ -38,17 +43,17 @@ export function openFile(bytes: Uint8Array): CertificateFile {
   const records = checkColophon(headBytes, head['end']);
   const list = head['embeddings'];
   if (Array.isArray(list)) {
-    if (rest.length > 0) throw new Rejection('/', 'bytes after the end');
+    if (reader.take(1).length > 0) throw new Rejection('/', 'bytes after the end');
     if (list.length !== records) throw new Rejection('/end/records', `expected ${list.length}`);
     return {
       head,
       embeddings: () => (list as readonly Json[]).map((entry, i) => ({ place: `/embeddings/${i}`, value: entry })),
     };
   }
-  const chunks = readChunks(list, rest, JSON.stringify(head['end']));
+  const chunks = readEntries(list);
   const total = chunks.reduce((sum, chunk) => sum + chunk.records, 0);
   if (total !== records) throw new Rejection('/end/records', `expected ${total}`);
-  return { head, embeddings: () => chunkEmbeddings(chunks) };
+  return { head, embeddings: () => chunkEmbeddings(chunks, reader, JSON.stringify(head['end'])) };
 }
 
 /** The number of records that the colophon claims, once its hash is right. */
@@ -63,38 +68,41 @@ function checkColophon(head: Uint8Array, end: Json | undefined): number {
   return countOf(colophon['records'], '/end/records');
 }
 
-interface Chunk {
-  readonly bytes: Uint8Array;
+interface ChunkEntry {
+  readonly place: string;
+  readonly size: number;
+  readonly sha256: Json | undefined;
   readonly records: number;
-  readonly no: number;
 }
 
-function readChunks(value: Json | undefined, rest: Uint8Array, end: string): Chunk[] {
+function readEntries(value: Json | undefined): ChunkEntry[] {
   const o = objectOf(value, '/embeddings', ['chunks']);
-  let at = 0;
-  const chunks = listOf(o['chunks'], '/embeddings/chunks').map((entry, no): Chunk => {
+  return listOf(o['chunks'], '/embeddings/chunks').map((entry, no): ChunkEntry => {
     const place = `/embeddings/chunks/${no}`;
     const chunk = objectOf(entry, place, ['sha256', 'records', 'bytes']);
     const size = countOf(chunk['bytes'], `${place}/bytes`, 1);
-    const bytes = rest.subarray(at, at + size);
-    if (bytes.length !== size) throw new Rejection(place, 'the file ends inside this chunk');
-    if (sha256Hex(bytes) !== chunk['sha256']) throw new Rejection(`${place}/sha256`, 'the bytes have another hash');
-    at += size;
-    return { bytes, records: countOf(chunk['records'], `${place}/records`, 1), no };
+    const records = countOf(chunk['records'], `${place}/records`, 1);
+    if (size > CHUNK_BYTES && records > 1)
+      throw new Rejection(`${place}/bytes`, `a chunk of several embeddings has at most ${CHUNK_BYTES}`);
+    return { place, size, sha256: chunk['sha256'], records };
   });
-  const last = decodeText(rest.subarray(at), '/end').replace(/\n$/, '');
-  if (last !== `{"end":${end}}`) throw new Rejection('/end', 'the last line does not repeat the colophon');
-  return chunks;
 }
 
-function* chunkEmbeddings(chunks: readonly Chunk[]): Generator<{ place: string; value: Json }> {
-  for (const { bytes, records, no } of chunks) {
-    const lines = decodeText(bytes, `/embeddings/chunks/${no}`).split('\n');
+function* chunkEmbeddings(
+  chunks: readonly ChunkEntry[],
+  reader: PieceReader,
+  end: string,
+): Generator<{ place: string; value: Json }> {
+  for (const { place, size, sha256, records } of chunks) {
+    const bytes = reader.take(size);
+    if (bytes.length !== size) throw new Rejection(place, 'the file ends inside this chunk');
+    if (sha256Hex(bytes) !== sha256) throw new Rejection(`${place}/sha256`, 'the bytes have another hash');
+    const lines = decodeText(bytes, place).split('\n');
     if (lines.pop() !== '' || lines.length !== records)
-      throw new Rejection(`/embeddings/chunks/${no}/records`, `expected ${lines.length}`);
-    for (const [i, line] of lines.entries()) {
-      const place = `/embeddings/chunks/${no}/${i}`;
-      yield { place, value: readJson(line, place) };
-    }
+      throw new Rejection(`${place}/records`, `expected ${lines.length}`);
+    for (const [i, line] of lines.entries()) yield { place: `${place}/${i}`, value: readJson(line, `${place}/${i}`) };
   }
+  const wanted = `{"end":${end}}`;
+  const last = decodeText(reader.take(wanted.length + 2), '/end').replace(/\n$/, '');
+  if (last !== wanted) throw new Rejection('/end', 'the last line does not repeat the colophon');
 }

@@ -1,4 +1,5 @@
 /** The check of a certificate in parcels: opened once in each thread, its trees run in intervals, concluded. */
+import { createHash, type Hash } from 'node:crypto';
 import {
   CHECKER_REVISION,
   concludeCheck,
@@ -12,7 +13,6 @@ import { pieces, type Ask } from './asking.ts';
 import { CpuMeter } from './cpu-meter.ts';
 import type { CheckEnd, CheckerWord, CheckJob, ConcludeEnd, ConcludeJob, OpenEnd, OpenJob } from './jobs.ts';
 import { paceRun, type Talk } from './paced-run.ts';
-import { sha256 } from './understand.ts';
 
 /** Parcels of each tree of a check. */
 const CHECK_PARCELS = 32;
@@ -31,10 +31,18 @@ let lastOpened: Opened | null = null;
 function opened(key: string, ask: Ask): Opened | Outcome {
   if (lastOpened?.key === key) return lastOpened;
   lastOpened = null;
-  const bytes = Buffer.concat([...pieces('certificate', ask)]);
-  const answer = openCheck(bytes);
+  const whole = createHash('sha256');
+  const answer = openCheck(hashed(pieces('certificate', ask), whole));
   if ('outcome' in answer) return answer.outcome;
-  return (lastOpened = { key, sha256: sha256(bytes), work: answer.work });
+  return (lastOpened = { key, sha256: whole.digest('hex'), work: answer.work });
+}
+
+/** The checker reads them one by one, to the last. */
+function* hashed(bytes: Iterable<Uint8Array>, hash: Hash): Generator<Uint8Array> {
+  for (const piece of bytes) {
+    hash.update(piece);
+    yield piece;
+  }
 }
 
 /** A certificate of ours that was opened before is not accepted now: the bytes have changed. */
