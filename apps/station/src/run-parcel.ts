@@ -4,7 +4,7 @@ import { assemble } from './assemble-parcel.ts';
 import { choose } from './choose-parcel.ts';
 import { conclude } from './conclude-parcel.ts';
 import type { Desk } from './desk.ts';
-import { crash, giveBack, spend } from './endings.ts';
+import { breakDown, crash, giveBack, spend } from './endings.ts';
 import { Ended, type HeldParcel } from './held-parcel.ts';
 import { check, list } from './interval-parcel.ts';
 import { isOutage } from './patience.ts';
@@ -52,6 +52,9 @@ async function letGo(held: HeldParcel, desk: Desk, error: unknown): Promise<void
       desk.log.warn(about, 'the database stayed away; the parcel goes on from its last checkpoint');
     } else if (error instanceof Ended) {
       await giveBack(held, desk);
+    } else if (error instanceof Error && error.name === 'MethodsDisagree') {
+      // a thread's error keeps its name, not its class; trying again cannot mend it
+      await breakDown(held, desk, error.message);
     } else {
       desk.log.error(about, 'the parcel ended with a fault');
       await crash(held, desk, error instanceof Error ? error.message : String(error));

@@ -87,7 +87,10 @@ export function methodWords(results: readonly StageResult[]): string {
   const said = results.filter((r) => r.repeats === undefined).at(-1)?.why;
   const second = results.find((r) => r.repeats !== undefined);
   if (said === undefined) return ARITHMETIC_WHY;
-  return second === undefined ? said : `${said} ${second.why} They agree: ${second.orbits} orbits.`;
+  if (second === undefined) return said;
+  const found =
+    second.orbits === '0' ? 'neither finds any' : `${second.orbits} ${second.orbits === '1' ? 'orbit' : 'orbits'}`;
+  return `${said} ${second.why} They agree: ${found}.`;
 }
 
 export const ARITHMETIC_WHY = 'Arithmetic settles it before any search.';
