@@ -16,7 +16,7 @@ const EXACT = 2n ** 52n;
 const LARGEST = 2n ** 47n;
 
 /** Above this rank the minors are not computed: the trees that are left to search by then are sparse. */
-const MAX_RANK = 64;
+export const PROJECTED_RANK = 64;
 
 /**
  * @param gram r × r, positive definite, rows in the order of the tree
@@ -24,7 +24,7 @@ const MAX_RANK = 64;
  */
 export function projectionForm(gram: readonly (readonly bigint[])[]): ProjectionForm | null {
   const rank = gram.length;
-  if (rank > MAX_RANK) return null;
+  if (rank > PROJECTED_RANK) return null;
   const { minors, shadows } = eliminate(gram);
   for (let k = 0; k < rank; k += 1) {
     if (!exactAt(minors[k]!, minors[k + 1]!, gram[k]![k]!)) return null;

@@ -8,19 +8,35 @@ import type { Columns } from './columns.ts';
 /** Above this many rows the row with fewest open columns is not looked for: first come, first served. */
 const CAREFUL_ROWS = 48;
 
+/** What `arrange` needs while it runs: one for all orders, since a ladder of 2,000 depths would hold the square of that. */
+class Scratch {
+  taken = new Uint8Array(16);
+  open = new Float64Array(16);
+  queued = new Uint8Array(16);
+  readonly queue: number[] = [];
+  readonly users: number[][] = [];
+
+  reserve(classes: number, depth: number): void {
+    if (classes > this.taken.length) this.taken = new Uint8Array(classes * 2);
+    if (depth > this.open.length) {
+      this.open = new Float64Array(depth * 2);
+      this.queued = new Uint8Array(depth * 2);
+    }
+    while (this.users.length < depth) this.users.push([]);
+  }
+}
+
+const scratch = new Scratch();
+
 export class SlotOrder {
   /** Classes in the order in which they are filled; `count` of them. */
   classes = new Int32Array(16);
-  private taken = new Uint8Array(16);
-  private open = new Float64Array(16);
-  private queued = new Uint8Array(16);
-  private queue: number[] = [];
-  private users: number[][] = [];
 
   /** @param target inner products of the new row with rows 0 … depth − 1 */
   arrange(columns: Columns, depth: number, target: Float64Array): void {
-    this.reserve(columns.count, depth);
-    const { taken, open, queued, users, queue } = this;
+    scratch.reserve(columns.count, depth);
+    if (columns.count > this.classes.length) this.classes = new Int32Array(columns.count * 2);
+    const { taken, open, queued, users, queue } = scratch;
     taken.fill(0, 0, columns.count);
     queued.fill(0, 0, depth);
     for (let i = 0; i < depth; i += 1) {
@@ -59,27 +75,15 @@ export class SlotOrder {
   }
 
   private enqueue(row: number): void {
-    this.queued[row] = 1;
-    this.queue.push(row);
+    scratch.queued[row] = 1;
+    scratch.queue.push(row);
   }
 
   private dequeue(depth: number): number {
-    if (depth > CAREFUL_ROWS) return this.queue.shift()!;
+    const { queue, open } = scratch;
+    if (depth > CAREFUL_ROWS) return queue.shift()!;
     let best = 0;
-    for (let q = 1; q < this.queue.length; q += 1)
-      if (this.open[this.queue[q]!]! < this.open[this.queue[best]!]!) best = q;
-    return this.queue.splice(best, 1)[0]!;
-  }
-
-  private reserve(classes: number, depth: number): void {
-    if (classes > this.classes.length) {
-      this.classes = new Int32Array(classes * 2);
-      this.taken = new Uint8Array(classes * 2);
-    }
-    if (depth > this.open.length) {
-      this.open = new Float64Array(depth * 2);
-      this.queued = new Uint8Array(depth * 2);
-    }
-    while (this.users.length < depth) this.users.push([]);
+    for (let q = 1; q < queue.length; q += 1) if (open[queue[q]!]! < open[queue[best]!]!) best = q;
+    return queue.splice(best, 1)[0]!;
   }
 }

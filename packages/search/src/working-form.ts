@@ -1,7 +1,7 @@
 /** A plan's Gram matrix in the order of its rows, as the listing reads it, and the proof that doubles are exact. */
 import type { Plan } from './plan.ts';
 import { planGram } from './plan.ts';
-import { projectionForm, type ProjectionForm } from './projection-form.ts';
+import { projectionForm, PROJECTED_RANK, type ProjectionForm } from './projection-form.ts';
 
 /**
  * With all norms below this, |b_i| and S_i stay below 2^25 (Cauchy–Schwarz in the form itself), products of two of them
@@ -38,6 +38,7 @@ export function workingForm(plan: Plan): WorkingForm {
     targets: small ? order.map((w, k) => Float64Array.from({ length: k }, (_, i) => Number(gram[w]![order[i]!]!))) : [],
     bigNorms,
     bigTargets,
-    projection: small ? projectionForm(order.map((w) => order.map((v) => gram[w]![v]!))) : null,
+    projection:
+      small && order.length <= PROJECTED_RANK ? projectionForm(order.map((w) => order.map((v) => gram[w]![v]!))) : null,
   };
 }

@@ -12,7 +12,7 @@ import { Spool } from './spool.ts';
 import { understand } from './understand.ts';
 
 /** Below this CPU time a question is answered in the calling thread, without starting others. */
-const QUICK_CPU_MS = 1_000;
+const QUICK_CPU_MS = 300;
 
 export interface Answer {
   readonly kind: 'answer';
