@@ -101,9 +101,13 @@ describe('from a drawn tree to a checked certificate', () => {
     await page.getByLabel(/^Source:/).fill('P(3, 5, -7)');
     await page.keyboard.press('Enter');
     await page.getByRole('button', { name: /^the least Z/ }).click();
-    await page.getByText('Method:').click();
-    await page.getByRole('radio', { name: /^frames/ }).check();
-    await page.getByLabel(/^second opinion/).check();
+    // by keyboard alone: open, down to the fourth choice, on to the box
+    await page.locator('summary', { hasText: 'Method:' }).focus();
+    await page.keyboard.press('Enter');
+    await page.keyboard.press('Tab');
+    for (let down = 0; down < 3; down += 1) await page.keyboard.press('ArrowDown');
+    await page.keyboard.press('Tab');
+    await page.keyboard.press('Space');
     await page.getByText('frames, with a second opinion').waitFor();
     await page.getByRole('button', { name: 'Settle it' }).click();
     await page.waitForURL(/\/questions\//);
